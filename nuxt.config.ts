@@ -1,0 +1,40 @@
+export default defineNuxtConfig({
+  compatibilityDate: '2026-06-01',
+  srcDir: '.',
+  modules: ['@nuxt/eslint', '@pinia/nuxt', '@nuxtjs/tailwindcss', 'nuxt-auth-utils', 'nuxt-security'],
+  devtools: { enabled: false },
+  telemetry: false,
+  css: ['~/assets/css/main.css'],
+  components: [{ path: '~/components', pathPrefix: false }],
+  postcss: { plugins: { cssnano: false } },
+  tailwindcss: { cssPath: '~/assets/css/main.css', viewer: false },
+  app: { head: { htmlAttrs: { lang: 'en' }, title: 'Emulside' } },
+  // Public pages are server-rendered; what stands behind sign-in is not, so that nobody's page can be cached.
+  routeRules: {
+    '/studio/**': { ssr: false },
+  },
+  runtimeConfig: {
+    session: { name: 'emulside', password: '', maxAge: 60 * 60 * 24 * 30, cookie: { sameSite: 'lax', httpOnly: true, secure: false } },
+    public: { url: '' },
+  },
+  security: {
+    // It would hold whole request bodies in memory; every body is validated by its zod schema instead.
+    xssValidator: false,
+    rateLimiter: false,
+    requestSizeLimiter: false,
+    headers: {
+      contentSecurityPolicy: {
+        'img-src': ['\'self\'', 'data:', 'blob:'],
+        'worker-src': ['\'self\'', 'blob:'],
+        'connect-src': ['\'self\''],
+        'font-src': ['\'self\''],
+        'upgrade-insecure-requests': false,
+      },
+      strictTransportSecurity: false,
+      crossOriginEmbedderPolicy: false,
+    },
+  },
+  nitro: { preset: 'node-server', experimental: { openAPI: false } },
+  typescript: { strict: true },
+  vite: { build: { sourcemap: false } },
+})

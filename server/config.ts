@@ -1,0 +1,46 @@
+import { z } from 'zod'
+
+const flag = (fallback: boolean) => z.stringbool().default(fallback)
+const seconds = (fallback: number) => z.coerce.number().positive().default(fallback)
+
+/** Every setting of the service, by environment variable. A process that cannot read them stops, naming the variable. */
+export const settingsSchema = z.object({
+  DATABASE_URL: z.url({ protocol: /^postgres(ql)?$/, error: 'a postgres:// address' }),
+  /** folder of originals, film files and caches */
+  STORAGE_DIR: z.string().min(1),
+  HOST: z.string().default('127.0.0.1'),
+  PORT: z.coerce.number().int().min(1).max(65535).default(3000),
+  /** our own origin: checked on unsafe requests, used in links and QR codes; never taken from Host */
+  NUXT_PUBLIC_URL: z.url().optional(),
+  NUXT_SESSION_PASSWORD: z.string().min(32),
+  REGISTRATION: z.enum(['open', 'invite']).default('open'),
+  /** proxies whose forwarding headers are believed, as addresses or CIDR ranges */
+  TRUSTED_PROXIES: z.string().default(''),
+  INKJET_NETWORKS: z.string().default(''),
+  LEASE_SECONDS: seconds(10),
+  LEASE_RENEW_SECONDS: seconds(3),
+  POLL_SECONDS: seconds(2),
+  STUDIO_MAX_BYTES: z.coerce.number().int().positive().default(50_000_000_000),
+  FREE_DISK_MIN_BYTES: z.coerce.number().int().min(0).default(1_000_000_000),
+  RENDER_CACHE_MAX_BYTES: z.coerce.number().int().positive().default(20_000_000_000),
+  CHILD_ADDRESS_SPACE_BYTES: z.coerce.number().int().positive().default(8_000_000_000),
+  CHILD_TIMEOUT_SECONDS: seconds(180),
+  LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error']).default('info'),
+  /** answers are checked against the contract before they leave: on in tests */
+  CHECK_ANSWERS: flag(false),
+  RATE_LIMITS: flag(true),
+})
+
+export type Settings = z.infer<typeof settingsSchema>
+
+let settings: Settings | undefined
+
+/** Reads the settings once. Throws with one line a variable that is missing or wrong. */
+export function readSettings(environment: Record<string, string | undefined> = globalThis.process.env): Settings {
+  if (settings) return settings
+  const read = settingsSchema.safeParse(environment)
+  if (!read.success) {
+    throw new Error(`The configuration can't be used:\n${read.error.issues.map(i => `  ${i.path.join('.')}: ${i.message}`).join('\n')}`)
+  }
+  return settings = read.data
+}

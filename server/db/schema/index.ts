@@ -1,0 +1,4 @@
+export * from './people'
+export * from './shelf'
+export * from './benches'
+export * from './photos'

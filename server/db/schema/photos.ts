@@ -1,0 +1,99 @@
+import { sql } from 'drizzle-orm'
+import { bigint, boolean, check, foreignKey, index, integer, jsonb, pgTable, primaryKey, real, text, uniqueIndex, uuid, varchar } from 'drizzle-orm/pg-core'
+import type { z } from 'zod'
+import { aims, workStates } from '../../../shared/schemas/curves'
+import { limits } from '../../../shared/schemas/limits'
+import type { crop, margin, marks, Adjustments } from '../../../shared/schemas/negatives'
+import { filmFormats } from '../../../shared/schemas/negatives'
+import { benches, curves } from './benches'
+import { createdAt, instant, revision, studioId } from './columns'
+import { studios, users } from './people'
+
+export const photos = pgTable('photos', {
+  studioId: studioId().references(() => studios.id),
+  id: uuid().notNull(),
+  uploaderId: uuid().notNull().references(() => users.id),
+  name: varchar({ length: limits.nameLength }).notNull(),
+  format: varchar({ length: 10, enum: ['jpeg', 'png'] }).notNull(),
+  bytes: bigint({ mode: 'number' }).notNull(),
+  sha256: varchar({ length: 64 }).notNull(),
+  /** pixels of the upright picture */
+  width: integer().notNull(),
+  height: integer().notNull(),
+  orientation: integer().notNull(),
+  colourProfile: varchar({ length: 120 }).notNull(),
+  binnedAt: instant(),
+  createdAt: createdAt(),
+  revision: revision(),
+}, t => [
+  primaryKey({ columns: [t.studioId, t.id] }),
+  uniqueIndex('photos_same_bytes').on(t.studioId, t.uploaderId, t.sha256),
+  check('photos_orientation', sql`${t.orientation} between 1 and 8`),
+])
+
+/** All that decides what the film looks like, resolved when the negative is made or changed. */
+export interface NegativeSettings {
+  size: { widthMm: number, heightMm: number }
+  fit: 'crop' | 'contain'
+  crop: z.infer<typeof crop> | null
+  quarterTurns: number
+  straightenDegrees: number
+  pixelsPerInch: number
+  mirror: boolean
+  adjustments: Adjustments
+  margin: z.infer<typeof margin>
+  marks: z.infer<typeof marks>
+}
+
+export const negatives = pgTable('negatives', {
+  studioId: studioId(),
+  id: uuid().notNull(),
+  name: varchar({ length: limits.nameLength }).notNull(),
+  photoId: uuid().notNull(),
+  benchId: uuid().notNull(),
+  curveId: uuid().notNull(),
+  aim: varchar({ length: 24, enum: aims }).notNull(),
+  settings: jsonb().$type<NegativeSettings>().notNull(),
+  bodyHash: varchar({ length: 64 }).notNull(),
+  createdBy: uuid().notNull().references(() => users.id),
+  archivedAt: instant(),
+  createdAt: createdAt(),
+  revision: revision(),
+}, t => [
+  primaryKey({ columns: [t.studioId, t.id] }),
+  foreignKey({ columns: [t.studioId, t.photoId], foreignColumns: [photos.studioId, photos.id] }),
+  foreignKey({ columns: [t.studioId, t.benchId], foreignColumns: [benches.studioId, benches.id] }),
+  foreignKey({ columns: [t.studioId, t.benchId, t.curveId], foreignColumns: [curves.studioId, curves.benchId, curves.id] }),
+  index('negatives_photo').on(t.studioId, t.photoId),
+])
+
+/** One film file, by the hash of everything that decides its bytes. The row is the truth about the work; the file is a cache. */
+export const renders = pgTable('renders', {
+  studioId: studioId(),
+  id: uuid().notNull(),
+  negativeId: uuid().notNull(),
+  renderKey: varchar({ length: 64 }).notNull(),
+  format: varchar({ length: 8, enum: filmFormats }).notNull(),
+  state: varchar({ length: 10, enum: workStates }).notNull(),
+  progress: real().notNull().default(0),
+  /** the resolved instruction for the image engine */
+  order: jsonb('film_order').$type<Record<string, unknown>>().notNull(),
+  leaseOwner: varchar({ length: 80 }),
+  leaseUntil: instant(),
+  /** counts how often the work was taken up; checked when it is handed in */
+  fence: integer().notNull().default(0),
+  requestId: varchar({ length: 64 }),
+  errorCode: varchar({ length: 60 }),
+  errorMessage: text(),
+  bytes: bigint({ mode: 'number' }),
+  sha256: varchar({ length: 64 }),
+  pinned: boolean().notNull().default(false),
+  createdAt: createdAt(),
+  readyAt: instant(),
+  lastUsedAt: instant(),
+}, t => [
+  primaryKey({ columns: [t.studioId, t.id] }),
+  uniqueIndex('renders_key').on(t.studioId, t.renderKey),
+  foreignKey({ columns: [t.studioId, t.negativeId], foreignColumns: [negatives.studioId, negatives.id] }),
+  index('renders_open').on(t.state, t.leaseUntil).where(sql`${t.state} in ('waiting', 'making')`),
+])

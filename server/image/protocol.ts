@@ -1,0 +1,58 @@
+import type { Aim } from '#shared/schemas/curves'
+import type { Adjustments, FilmFormat } from '#shared/schemas/negatives'
+
+/** What stands in a picture file's header, read before anything is decoded. */
+export interface PictureFacts {
+  format: 'jpeg' | 'png'
+  /** pixels of the upright picture */
+  width: number
+  height: number
+  orientation: number
+  bitDepth: 8 | 16
+  colourProfile: string
+}
+
+/** Which part of the upright picture is shown, and how it is turned; api.md's coordinates. */
+export interface Geometry {
+  quarterTurns: number
+  straightenDegrees: number
+  /** fractions of the turned, straightened picture's bounding rectangle */
+  crop: { x: number, y: number, width: number, height: number }
+}
+
+/** From a photo's pixels to ink levels. */
+export interface ToneOrder {
+  adjustments: Adjustments
+  aim: Aim
+  /** print lightness at 1025 equal steps of ink level */
+  response: number[]
+}
+
+/** All that decides a film file's bytes, with the original's hash and the engine's version. */
+export interface FilmOrder {
+  format: FilmFormat
+  geometry: Geometry
+  tone: ToneOrder
+  /** the picture's own pixels, without margins; where the crop's shape differs (contain) it is centred and the rest filled like the margin */
+  picture: { widthPixels: number, heightPixels: number }
+  margin: { pixels: number, kind: 'clear' | 'opaque' }
+  pixelsPerInch: number
+  mirror: boolean
+  inkColor: string
+  marks: { ruler: boolean, label: boolean, labelText: string }
+  /** exact, for the PDF's boxes */
+  filmMm: { width: number, height: number }
+}
+
+/** Calls to an image child; paths are absolute. Each answers or fails with a ComputeError's code. */
+export interface ImageCalls {
+  probe: { in: { path: string }, out: PictureFacts }
+  /** upright black-and-white JPEG, `longerSide` pixels at most */
+  thumbnail: { in: { path: string, target: string, longerSide: number }, out: { width: number, height: number } }
+  /** interleaved 16-bit little-endian working-space channels, exactly width × height pixels */
+  proxy: { in: { path: string, target: string, geometry: Geometry, width: number, height: number }, out: { width: number, height: number } }
+  /** writes the film file; progress 0…1 comes in between */
+  film: { in: { path: string, target: string, order: FilmOrder, renderKey: string }, out: { bytes: number, sha256: string } }
+  /** one state of the triptych as an 8-bit PNG, through the same code as film */
+  forecast: { in: { path: string, target: string, order: FilmOrder, width: number, state: 'photo' | 'film' | 'print', palette: string }, out: { width: number, height: number } }
+}

@@ -1,0 +1,74 @@
+import { z } from 'zod'
+import { endpoint } from './endpoint'
+import { id, instant, listOf, listQuery, name, newId, revision, text } from './primitives'
+
+export const processes = ['cyanotype', 'van-dyke', 'salt', 'kallitype', 'platinum-palladium', 'gum', 'carbon', 'other'] as const
+export const process = z.enum(processes)
+export type Process = z.infer<typeof process>
+
+export const readingChannels = ['lightness', 'density-blue', 'density-green', 'density-red', 'colour-path'] as const
+export const readingChannel = z.enum(readingChannels)
+
+/** The wet and coating side of a bench. */
+export const recipe = z.strictObject({
+  coats: z.number().int().min(1).max(10),
+  coatedWith: z.enum(['brush', 'rod', 'float', 'other']),
+  drying: text, contact: text, contrastAgent: text, developer: text,
+  developerTemperatureCelsius: z.number().min(0).max(100),
+  firstBath: text, clearing: text, toner: text,
+}).partial()
+
+/** How film files reach the inkjet. */
+export const path = z.strictObject({
+  fileKind: z.enum(['pdf', 'tiff', 'png']),
+  bitDepth: z.union([z.literal(8), z.literal(16)]),
+  sentBy: name,
+  pixelsPerInch: z.number().int().min(72).max(1440),
+  mediaType: name, quality: name,
+  colourAdjustment: z.enum(['off', 'on', 'unknown']),
+  filmSide: name,
+}).partial()
+
+export const inkColor = z.string().regex(/^#[0-9a-f]{6}$/i, 'Write the ink colour as #rrggbb.')
+export const ink = z.strictObject({ color: inkColor })
+export const exposureUnit = z.enum(['s', 'dose'])
+export const baseExposureValue = z.strictObject({ value: z.number().positive().max(1e6), unit: exposureUnit })
+
+/** What makes the combination: a change of any of these makes another bench. */
+export const combination = {
+  process,
+  paperId: id.optional(), sensitizerId: id.optional(), filmId: id.optional(), inkjetId: id.optional(), lampId: id.optional(),
+  recipe: recipe.optional(), path: path.optional(), ink: ink.optional(), readingChannel: readingChannel.optional(), mirror: z.boolean().optional(),
+}
+export const benchBody = z.strictObject({ id: newId, name, ...combination, baseExposure: baseExposureValue.optional() })
+export const benchPatch = z.strictObject({
+  name: name.optional(), ...z.object(combination).partial().shape, baseExposure: baseExposureValue.optional(), revision,
+})
+
+const curveBrief = z.object({ id, version: z.number().int(), calibrated: z.boolean(), blackLightness: z.number(), whiteLightness: z.number() })
+export const bench = z.object({
+  id, name: z.string(), process,
+  paperId: id.nullable(), sensitizerId: id.nullable(), filmId: id.nullable(), inkjetId: id.nullable(), lampId: id.nullable(),
+  recipe, path, ink, readingChannel, mirror: z.boolean(),
+  /** true for the service’s own benches, whose curve rests on printed assumptions only */
+  starter: z.boolean(),
+  assumptions: z.array(z.string()),
+  baseExposure: z.object({ value: z.number(), unit: exposureUnit, low: z.number().nullable(), high: z.number().nullable(), since: instant }).nullable(),
+  curveInUse: curveBrief.nullable(),
+  archivedAt: instant.nullable(), createdAt: instant, revision,
+})
+export type Bench = z.infer<typeof bench>
+
+const baseExposure = z.object({ id, exposureSeconds: z.number(), exposureSecondsLow: z.number(), exposureSecondsHigh: z.number() })
+
+const root = '/api/studios/:studio/benches' as const
+export const benchEndpoints = {
+  listBenches: endpoint({ method: 'GET', path: root, access: 'member', summary: 'Benches, newest first.', query: listQuery.extend({ archived: z.stringbool().optional() }), answers: { 200: listOf(bench) } }),
+  createBench: endpoint({ method: 'POST', path: root, access: 'technician', summary: 'Set up a bench.', body: benchBody, answers: { 200: bench, 201: bench } }),
+  bench: endpoint({ method: 'GET', path: `${root}/:bench`, access: 'member', summary: 'One bench.', answers: { 200: bench } }),
+  changeBench: endpoint({ method: 'PATCH', path: `${root}/:bench`, access: 'technician', summary: 'Change it; a changed combination with readings is refused (`combination_fixed`) and a copy offered.', body: benchPatch, answers: { 200: bench } }),
+  copyBench: endpoint({ method: 'POST', path: `${root}/:bench/copy`, access: 'technician', summary: 'A new bench with this one’s combination, changed where the body says.', body: benchPatch.omit({ revision: true }).extend({ id: newId }), answers: { 200: bench, 201: bench } }),
+  archiveBench: endpoint({ method: 'POST', path: `${root}/:bench/archive`, access: 'technician', summary: 'Put it away; what was made with it stays.', body: z.strictObject({ revision }), answers: { 200: bench } }),
+  createStarterBench: endpoint({ method: 'POST', path: '/api/studios/:studio/starter-benches', access: 'member', summary: 'The service’s own bench for a process, with an uncalibrated starter curve.', body: z.strictObject({ process }), answers: { 200: bench, 201: bench } }),
+  listBaseExposures: endpoint({ method: 'GET', path: `${root}/:bench/base-exposures`, access: 'member', summary: 'The bench’s base exposures, newest first.', query: listQuery, answers: { 200: listOf(baseExposure.extend({ value: z.number(), unit: exposureUnit, createdAt: instant })) } }),
+}

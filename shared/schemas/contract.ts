@@ -1,0 +1,20 @@
+import { z } from 'zod'
+import { benchEndpoints } from './benches'
+import { curveEndpoints } from './curves'
+import { endpoint, type Endpoint } from './endpoint'
+import { negativeEndpoints } from './negatives'
+import { peopleEndpoints } from './people'
+import { photoEndpoints } from './photos'
+import { shelfEndpoints } from './shelf'
+
+const serviceEndpoints = {
+  version: endpoint({ method: 'GET', path: '/api', access: 'public', summary: 'Version and build.', answers: { 200: z.object({ version: z.string(), build: z.string() }) } }),
+  openapi: endpoint({ method: 'GET', path: '/api/openapi.json', access: 'public', summary: 'This contract as OpenAPI 3.1.', answers: { 200: z.record(z.string(), z.unknown()) } }),
+  live: endpoint({ method: 'GET', path: '/api/health/live', access: 'public', summary: 'The process answers.', answers: { 200: z.object({ status: z.literal('ok') }) } }),
+  ready: endpoint({ method: 'GET', path: '/api/health/ready', access: 'public', summary: 'Database and storage answer too.', answers: { 200: z.object({ status: z.literal('ok') }) } }),
+}
+
+/** Every route of the service, by name. Validation, types and the OpenAPI document all come from here. */
+export const contract = {
+  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...photoEndpoints, ...negativeEndpoints,
+} satisfies Record<string, Endpoint>

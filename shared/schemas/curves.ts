@@ -1,0 +1,78 @@
+import { z } from 'zod'
+import { endpoint } from './endpoint'
+import { fraction, id, instant, listOf, listQuery, newId, text } from './primitives'
+
+export const aims = ['even-lightness', 'keep-middle-tones', 'even-density'] as const
+export const aim = z.enum(aims)
+export type Aim = z.infer<typeof aim>
+export const curveStates = ['draft', 'in-use', 'retired'] as const
+export const workStates = ['waiting', 'making', 'ready', 'failed'] as const
+export const workState = z.enum(workStates)
+export const readingUnits = ['lightness', 'density', 'reflectance'] as const
+export const zeros = ['absolute', 'paper'] as const
+
+export const warning = z.object({ code: z.string(), message: z.string() })
+export type Warning = z.infer<typeof warning>
+
+const measured = z.strictObject({ level: fraction, value: z.number().min(-1).max(120) })
+export const readingBody = z.strictObject({
+  id: newId,
+  unit: z.enum(readingUnits),
+  zero: z.enum(zeros).optional(),
+  paperLightness: z.number().min(20).max(100).optional(),
+  values: z.array(measured).max(5000),
+})
+export const readingQuery = z.strictObject({
+  id: newId, zero: z.enum(zeros).optional(), paperLightness: z.coerce.number().min(20).max(100).optional(),
+})
+
+export const readingPatch = z.object({
+  level: fraction, lightness: z.number().nullable(),
+  lab: z.tuple([z.number(), z.number(), z.number()]).nullable(),
+  deviation: z.number().nullable(), used: z.boolean(),
+})
+export const reading = z.object({
+  id, benchId: id, state: workState, quality: z.enum(['scan', 'phone', 'measured']),
+  unit: z.enum(readingUnits).nullable(), zero: z.enum(zeros).nullable(), paperLightness: z.number().nullable(),
+  corners: z.array(z.tuple([z.number(), z.number()])).nullable(),
+  patches: z.array(readingPatch), warnings: z.array(warning), createdAt: instant,
+})
+export type Reading = z.infer<typeof reading>
+
+export const curvePoint = z.object({ tone: fraction, level: fraction, levelLow: fraction, levelHigh: fraction })
+const errorFigures = z.object({ median: z.number(), p95: z.number() })
+export const curve = z.object({
+  id, benchId: id, version: z.number().int().min(1), state: z.enum(curveStates), aim,
+  /** false for a starter curve: it rests on assumptions, not on a reading */
+  calibrated: z.boolean(), assumptions: z.array(z.string()),
+  readingIds: z.array(id),
+  blackLightness: z.number(), whiteLightness: z.number(),
+  points: z.array(curvePoint),
+  expectedError: z.object({ nextPrint: errorFigures, curve: errorFigures }).nullable(),
+  warnings: z.array(warning), notes: z.string(), createdAt: instant, inUseSince: instant.nullable(),
+})
+export type Curve = z.infer<typeof curve>
+/** In lists the points are left out. */
+export const curveBrief = curve.omit({ points: true })
+
+const bench = '/api/studios/:studio/benches/:bench' as const
+const curves = '/api/studios/:studio/curves/:curve' as const
+export const curveEndpoints = {
+  listReadings: endpoint({ method: 'GET', path: `${bench}/readings`, access: 'member', summary: 'Readings of a bench.', query: listQuery, answers: { 200: listOf(reading) } }),
+  createReading: endpoint({
+    method: 'POST', path: `${bench}/readings`, access: 'technician', summary: 'Measured values, typed in or imported.',
+    query: readingQuery, body: readingBody,
+    otherBodies: { 'text/csv': 'A header line `level,lightness|density|reflectance`, then a row a patch.', 'text/plain': 'CGATS text (ISO 28178) with a level column and LAB_L, D_VIS or a reflectance.' },
+    answers: { 200: reading, 201: reading },
+  }),
+  reading: endpoint({ method: 'GET', path: '/api/studios/:studio/readings/:reading', access: 'member', summary: 'One reading.', answers: { 200: reading } }),
+  listCurves: endpoint({ method: 'GET', path: `${bench}/curves`, access: 'member', summary: 'Curve versions of a bench.', query: listQuery, answers: { 200: listOf(curveBrief) } }),
+  createCurve: endpoint({
+    method: 'POST', path: `${bench}/curves`, access: 'technician', summary: 'Fit a draft curve from readings.',
+    body: z.strictObject({ id: newId, readingIds: z.array(id).min(1).max(50), aim: aim.optional(), notes: text.optional() }), answers: { 200: curve, 201: curve },
+  }),
+  curve: endpoint({ method: 'GET', path: curves, access: 'member', summary: 'One curve with its points.', answers: { 200: curve } }),
+  useCurve: endpoint({ method: 'POST', path: `${curves}/use`, access: 'technician', summary: 'Put a curve in use; the one before is retired.', answers: { 200: curve } }),
+  retireCurve: endpoint({ method: 'POST', path: `${curves}/retire`, access: 'technician', summary: 'Retire a curve.', answers: { 200: curve } }),
+  curveTable: endpoint({ method: 'GET', path: `${curves}/table`, access: 'member', summary: 'The curve as 1025 named rows.', query: z.strictObject({ format: z.enum(['csv', 'json', 'cgats']).default('csv') }), answers: { 200: ['text/csv', 'application/json', 'text/plain'] } }),
+}

@@ -1,0 +1,26 @@
+import type { z } from 'zod'
+
+/**
+ * Who may call: `public`; `session` (any signed-in person); `fresh-session` (signed in within ten minutes);
+ * or the least role in the studio that the path names.
+ */
+export type Access = 'public' | 'session' | 'fresh-session' | 'member' | 'technician' | 'owner'
+
+/** An answer's body by status: a schema, or the media types of a file that is streamed, or null for none. */
+export type AnswerShape = z.ZodType | readonly string[] | null
+
+export interface Endpoint {
+  method: 'GET' | 'POST' | 'PATCH' | 'PUT' | 'DELETE'
+  path: `/api${string}`
+  access: Access
+  summary: string
+  query?: z.ZodType
+  /** JSON body */
+  body?: z.ZodType
+  /** other bodies, by media type: what the part or the text holds */
+  otherBodies?: Record<string, string>
+  answers: Record<number, AnswerShape>
+}
+
+/** Keeps the literal types of one row of the contract. */
+export const endpoint = <const E extends Endpoint>(row: E): E => row

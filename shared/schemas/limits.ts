@@ -1,0 +1,17 @@
+/** Bounds that tables, forms and schemas share. */
+export const limits = {
+  nameLength: 120,
+  textLength: 2000,
+  emailLength: 254,
+  passwordMinLength: 10,
+  passwordMaxLength: 200,
+  /** mm; the least and the greatest side of a print or a page */
+  sideMinMm: 5,
+  sideMaxMm: 1500,
+  marginMaxMm: 60,
+  pixelsPerInchMin: 72,
+  pixelsPerInchMax: 1440,
+  filmMaxPixels: 200_000_000,
+  fileMaxBytes: 1_000_000_000,
+  pageMax: 100,
+} as const
