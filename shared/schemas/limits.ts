@@ -13,5 +13,7 @@ export const limits = {
   pixelsPerInchMax: 1440,
   filmMaxPixels: 200_000_000,
   fileMaxBytes: 1_000_000_000,
+  /** pictures in one upload */
+  uploadMaxFiles: 100,
   pageMax: 100,
 } as const

@@ -25,10 +25,12 @@ export const proxyQuery = z.strictObject({
 })
 
 const root = '/api/studios/:studio/photos' as const
-const photos = z.object({ items: z.array(photo) })
+/** A picture of an upload that was not taken, by the file name it came with, and why. */
+export const refusedFile = z.object({ name: z.string(), code: z.string(), message: z.string() })
+const photos = z.object({ items: z.array(photo), refused: z.array(refusedFile) })
 export const photoEndpoints = {
   listPhotos: endpoint({ method: 'GET', path: root, access: 'member', summary: 'Photos that one may see.', query: listQuery.extend({ bin: z.stringbool().optional() }), answers: { 200: listOf(photo) } }),
-  uploadPhotos: endpoint({ method: 'POST', path: root, access: 'member', summary: 'Upload one or many photos, streamed.', otherBodies: { 'multipart/form-data': 'Each picture as a part named `file`.' }, answers: { 200: photos, 201: photos } }),
+  uploadPhotos: endpoint({ method: 'POST', path: root, access: 'member', summary: 'Upload one or many photos, streamed. Good pictures are taken even when others are refused; when none can be taken the answer is the first one’s error.', otherBodies: { 'multipart/form-data': 'Each picture as a part named `file`.' }, answers: { 200: photos, 201: photos } }),
   photo: endpoint({ method: 'GET', path: `${root}/:photo`, access: 'member', summary: 'One photo.', answers: { 200: photo } }),
   changePhoto: endpoint({ method: 'PATCH', path: `${root}/:photo`, access: 'member', summary: 'Rename a photo.', body: z.strictObject({ name, revision }), answers: { 200: photo } }),
   binPhoto: endpoint({ method: 'DELETE', path: `${root}/:photo`, access: 'member', summary: 'Put a photo into the bin.', answers: { 204: null } }),

@@ -250,7 +250,7 @@ CREATE TABLE "photos" (
 CREATE TABLE "renders" (
 	"studio_id" uuid NOT NULL,
 	"id" uuid NOT NULL,
-	"negative_id" uuid NOT NULL,
+	"photo_id" uuid NOT NULL,
 	"render_key" varchar(64) NOT NULL,
 	"format" varchar(8) NOT NULL,
 	"state" varchar(10) NOT NULL,
@@ -259,6 +259,7 @@ CREATE TABLE "renders" (
 	"lease_owner" varchar(80),
 	"lease_until" timestamp with time zone,
 	"fence" integer DEFAULT 0 NOT NULL,
+	"failures" integer DEFAULT 0 NOT NULL,
 	"request_id" varchar(64),
 	"error_code" varchar(60),
 	"error_message" text,
@@ -300,7 +301,7 @@ ALTER TABLE "negatives" ADD CONSTRAINT "negatives_studio_id_bench_id_benches_stu
 ALTER TABLE "negatives" ADD CONSTRAINT "negatives_studio_id_bench_id_curve_id_curves_studio_id_bench_id_id_fk" FOREIGN KEY ("studio_id","bench_id","curve_id") REFERENCES "public"."curves"("studio_id","bench_id","id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "photos" ADD CONSTRAINT "photos_studio_id_studios_id_fk" FOREIGN KEY ("studio_id") REFERENCES "public"."studios"("id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 ALTER TABLE "photos" ADD CONSTRAINT "photos_uploader_id_users_id_fk" FOREIGN KEY ("uploader_id") REFERENCES "public"."users"("id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
-ALTER TABLE "renders" ADD CONSTRAINT "renders_studio_id_negative_id_negatives_studio_id_id_fk" FOREIGN KEY ("studio_id","negative_id") REFERENCES "public"."negatives"("studio_id","id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
+ALTER TABLE "renders" ADD CONSTRAINT "renders_studio_id_photo_id_photos_studio_id_id_fk" FOREIGN KEY ("studio_id","photo_id") REFERENCES "public"."photos"("studio_id","id") ON DELETE no action ON UPDATE no action;--> statement-breakpoint
 CREATE INDEX "events_studio" ON "events" USING btree ("studio_id","id");--> statement-breakpoint
 CREATE INDEX "memberships_user" ON "memberships" USING btree ("user_id");--> statement-breakpoint
 CREATE INDEX "sessions_user" ON "sessions" USING btree ("user_id");--> statement-breakpoint
@@ -308,7 +309,9 @@ CREATE UNIQUE INDEX "users_email" ON "users" USING btree (lower("email"));--> st
 CREATE INDEX "base_exposures_bench" ON "base_exposures" USING btree ("studio_id","bench_id","id");--> statement-breakpoint
 CREATE UNIQUE INDEX "benches_one_starter" ON "benches" USING btree ("studio_id","process") WHERE "benches"."starter";--> statement-breakpoint
 CREATE UNIQUE INDEX "curves_one_in_use" ON "curves" USING btree ("studio_id","bench_id") WHERE "curves"."state" = 'in-use';--> statement-breakpoint
+CREATE INDEX "negatives_maker" ON "negatives" USING btree ("studio_id","created_by","id");--> statement-breakpoint
 CREATE INDEX "negatives_photo" ON "negatives" USING btree ("studio_id","photo_id");--> statement-breakpoint
 CREATE UNIQUE INDEX "photos_same_bytes" ON "photos" USING btree ("studio_id","uploader_id","sha256");--> statement-breakpoint
+CREATE INDEX "photos_uploader" ON "photos" USING btree ("studio_id","uploader_id","id");--> statement-breakpoint
 CREATE UNIQUE INDEX "renders_key" ON "renders" USING btree ("studio_id","render_key");--> statement-breakpoint
-CREATE INDEX "renders_open" ON "renders" USING btree ("state","lease_until") WHERE "renders"."state" in ('waiting', 'making');
+CREATE INDEX "renders_open" ON "renders" USING btree ("created_at") WHERE "renders"."state" in ('waiting', 'making');

@@ -2,6 +2,7 @@ import { sql } from 'drizzle-orm'
 import { bigint, boolean, check, foreignKey, index, integer, jsonb, pgTable, primaryKey, real, text, uniqueIndex, uuid, varchar } from 'drizzle-orm/pg-core'
 import type { z } from 'zod'
 import { aims, workStates } from '../../../shared/schemas/curves'
+import type { FilmOrder } from '../../image/protocol'
 import { limits } from '../../../shared/schemas/limits'
 import type { crop, margin, marks, Adjustments } from '../../../shared/schemas/negatives'
 import { filmFormats } from '../../../shared/schemas/negatives'
@@ -28,6 +29,7 @@ export const photos = pgTable('photos', {
 }, t => [
   primaryKey({ columns: [t.studioId, t.id] }),
   uniqueIndex('photos_same_bytes').on(t.studioId, t.uploaderId, t.sha256),
+  index('photos_uploader').on(t.studioId, t.uploaderId, t.id),
   check('photos_orientation', sql`${t.orientation} between 1 and 8`),
 ])
 
@@ -64,24 +66,30 @@ export const negatives = pgTable('negatives', {
   foreignKey({ columns: [t.studioId, t.photoId], foreignColumns: [photos.studioId, photos.id] }),
   foreignKey({ columns: [t.studioId, t.benchId], foreignColumns: [benches.studioId, benches.id] }),
   foreignKey({ columns: [t.studioId, t.benchId, t.curveId], foreignColumns: [curves.studioId, curves.benchId, curves.id] }),
+  index('negatives_maker').on(t.studioId, t.createdBy, t.id),
   index('negatives_photo').on(t.studioId, t.photoId),
 ])
 
-/** One film file, by the hash of everything that decides its bytes. The row is the truth about the work; the file is a cache. */
+/**
+ * One film file, by the hash of everything that decides its bytes: negatives with equal settings share it.
+ * The row is the truth about the work; the file is a cache. A file that was put out of the cache has no row.
+ */
 export const renders = pgTable('renders', {
   studioId: studioId(),
   id: uuid().notNull(),
-  negativeId: uuid().notNull(),
+  photoId: uuid().notNull(),
   renderKey: varchar({ length: 64 }).notNull(),
   format: varchar({ length: 8, enum: filmFormats }).notNull(),
   state: varchar({ length: 10, enum: workStates }).notNull(),
   progress: real().notNull().default(0),
   /** the resolved instruction for the image engine */
-  order: jsonb('film_order').$type<Record<string, unknown>>().notNull(),
+  order: jsonb('film_order').$type<FilmOrder>().notNull(),
   leaseOwner: varchar({ length: 80 }),
   leaseUntil: instant(),
   /** counts how often the work was taken up; checked when it is handed in */
   fence: integer().notNull().default(0),
+  /** attempts that ended in a crash of the image child or an unexpected error; the third ends the work */
+  failures: integer().notNull().default(0),
   requestId: varchar({ length: 64 }),
   errorCode: varchar({ length: 60 }),
   errorMessage: text(),
@@ -94,6 +102,6 @@ export const renders = pgTable('renders', {
 }, t => [
   primaryKey({ columns: [t.studioId, t.id] }),
   uniqueIndex('renders_key').on(t.studioId, t.renderKey),
-  foreignKey({ columns: [t.studioId, t.negativeId], foreignColumns: [negatives.studioId, negatives.id] }),
-  index('renders_open').on(t.state, t.leaseUntil).where(sql`${t.state} in ('waiting', 'making')`),
+  foreignKey({ columns: [t.studioId, t.photoId], foreignColumns: [photos.studioId, photos.id] }),
+  index('renders_open').on(t.createdAt).where(sql`${t.state} in ('waiting', 'making')`),
 ])
