@@ -1,6 +1,7 @@
 export default defineNuxtConfig({
   compatibilityDate: '2026-06-01',
   srcDir: '.',
+  auth: { loadStrategy: 'none' },
   modules: ['@nuxt/eslint', '@pinia/nuxt', '@nuxtjs/tailwindcss', 'nuxt-auth-utils', 'nuxt-security'],
   devtools: { enabled: false },
   telemetry: false,
@@ -34,7 +35,7 @@ export default defineNuxtConfig({
       crossOriginEmbedderPolicy: false,
     },
   },
-  nitro: { preset: 'node-server', experimental: { openAPI: false } },
+  nitro: { preset: 'node-server' },
   typescript: { strict: true },
   vite: { build: { sourcemap: false } },
 })

@@ -20,6 +20,7 @@ export const errorCodes = {
   combination_fixed: [409, 'Combination fixed'],
   wrong_state: [409, 'Wrong state'],
   studio_full: [413, 'Studio full'],
+  body_too_large: [413, 'Body too large'],
   file_too_large: [413, 'File too large'],
   picture_too_large: [413, 'Picture too large'],
   not_an_image: [415, 'Not an image'],

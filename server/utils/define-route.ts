@@ -1,24 +1,31 @@
+import { isDeepStrictEqual } from 'node:util'
 import type { EventHandlerRequest, H3Event } from 'h3'
 import { z } from 'zod'
 import type { Endpoint } from '#shared/schemas/endpoint'
 import { ComputeError } from '#shared/errors'
 import { readSettings } from '../config'
 import type { Person, StudioAccess } from '../services/access'
-import { enterStudio, requireFreshSession, requirePerson } from '../services/access'
+import { enterStudio } from '../services/access'
 import { answerError } from './answer-error'
 import { refuseForeignOrigin } from './foreign-origin'
+import { bodyLimits, mediaType, readJson, readText } from './read-body'
+import { requireFreshSession, requirePerson } from './require-person'
 
 type Parsed<S> = S extends z.ZodType ? z.output<S> : undefined
 type Field<E, K extends string> = E extends Record<K, infer S> ? Parsed<S> : undefined
 type InStudio<E extends Endpoint> = E['access'] extends 'member' | 'technician' | 'owner' ? StudioAccess : undefined
 type SignedIn<E extends Endpoint> = E['access'] extends 'public' ? undefined : Person
+type Body<E extends Endpoint> = E extends { otherBodies: object } ? Field<E, 'body'> | undefined : Field<E, 'body'>
 
 export interface RouteContext<E extends Endpoint> {
   event: H3Event
   person: SignedIn<E>
   studio: InStudio<E>
   query: Field<E, 'query'>
-  body: Field<E, 'body'>
+  /** the JSON body; undefined where one of `otherBodies` came instead */
+  body: Body<E>
+  /** the text, where one of `otherBodies` is a text and came */
+  text: string | undefined
   /** a path parameter; one that is no UUID names nothing, so it answers 404 */
   idParam: (name: string) => string
 }
@@ -33,19 +40,10 @@ export function defineRoute<const E extends Endpoint>(row: E, handle: (context: 
   return defineEventHandler<EventHandlerRequest, Promise<unknown>>(async (event) => {
     try {
       refuseForeignOrigin(event)
-      const person = row.access === 'public' ? undefined : await requirePerson(event)
-      if (row.access === 'fresh-session') await requireFreshSession(event)
-      const studio = row.access === 'member' || row.access === 'technician' || row.access === 'owner'
-        ? await enterStudio(person!, getRouterParam(event, 'studio') ?? '', row.access)
-        : undefined
-      const query = row.query ? row.query.parse(getQuery(event)) : undefined
-      const body = row.body && acceptsJson(event, row) ? row.body.parse(await readJson(event)) : undefined
-      const idParam = (name: string) => {
-        const parsed = uuid.safeParse(getRouterParam(event, name))
-        if (!parsed.success) throw new ComputeError('not_found', 'There is nothing under this address.')
-        return parsed.data
-      }
-      const answer = await handle({ event, person, studio, query, body, idParam } as RouteContext<E>)
+      const callers = await admit(event, row)
+      const query = row.query?.parse(getQuery(event))
+      const answer = await handle({ event, ...callers, query, ...await readBody(event, row), idParam: idParamOf(event) } as RouteContext<E>)
+      if (row.access !== 'public' && !getResponseHeader(event, 'Cache-Control')) setResponseHeader(event, 'Cache-Control', 'no-store')
       if (readSettings().CHECK_ANSWERS) checkAnswer(row, getResponseStatus(event), answer)
       return answer
     }
@@ -55,25 +53,37 @@ export function defineRoute<const E extends Endpoint>(row: E, handle: (context: 
   })
 }
 
-function acceptsJson(event: H3Event, row: Endpoint): boolean {
-  const type = (getHeader(event, 'content-type') ?? '').split(';')[0]!.trim().toLowerCase()
-  if (type === 'application/json') return true
-  if (row.otherBodies && Object.keys(row.otherBodies).includes(type)) return false
-  throw new ComputeError('unsupported_media', 'Send the body as application/json.')
+async function admit(event: H3Event, { access }: Endpoint): Promise<{ person?: Person, studio?: StudioAccess }> {
+  if (access === 'public') return {}
+  const person = await requirePerson(event)
+  if (access === 'fresh-session') requireFreshSession(person)
+  if (access === 'session' || access === 'fresh-session') return { person }
+  return { person, studio: await enterStudio(person, getRouterParam(event, 'studio') ?? '', access) }
 }
 
-async function readJson(event: H3Event): Promise<unknown> {
-  const raw = await readRawBody(event, 'utf8')
-  try {
-    return JSON.parse(raw ?? '')
-  }
-  catch {
-    throw new ComputeError('malformed_body', 'The body is not valid JSON.')
-  }
+/** Bodies that are neither JSON nor text (uploads) are left in the stream for the route. */
+async function readBody(event: H3Event, row: Endpoint): Promise<{ body?: unknown, text?: string }> {
+  if (!row.body && !row.otherBodies) return {}
+  const type = mediaType(event)
+  if (row.body && type === 'application/json') return { body: row.body.parse(await readJson(event)) }
+  const others = Object.keys(row.otherBodies ?? {})
+  if (others.includes(type)) return type.startsWith('text/') ? { text: await readText(event, bodyLimits.readingsTextBytes) } : {}
+  throw new ComputeError('unsupported_media', `Send the body as ${[...(row.body ? ['application/json'] : []), ...others].join(' or ')}.`)
 }
 
+const idParamOf = (event: H3Event) => (name: string): string => {
+  const parsed = uuid.safeParse(getRouterParam(event, name))
+  if (!parsed.success) throw new ComputeError('not_found', 'There is nothing under this address.')
+  return parsed.data
+}
+
+/** An answer must fit its contract and carry no field that the contract does not name. */
 function checkAnswer(row: Endpoint, status: number, answer: unknown): void {
   const shape = row.answers[status]
-  if (shape instanceof z.ZodType) shape.parse(answer)
-  else if (shape === undefined) throw new Error(`${row.method} ${row.path} answered ${status}, which its contract does not name.`)
+  if (shape === undefined) throw new Error(`${row.method} ${row.path} answered ${status}, which its contract does not name.`)
+  if (!(shape instanceof z.ZodType)) return
+  const sent: unknown = JSON.parse(JSON.stringify(answer))
+  if (!isDeepStrictEqual(JSON.parse(JSON.stringify(shape.parse(sent))), sent)) {
+    throw new Error(`${row.method} ${row.path} answered fields that its contract does not name.`)
+  }
 }
