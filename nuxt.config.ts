@@ -9,10 +9,19 @@ export default defineNuxtConfig({
   components: [{ path: '~/components', pathPrefix: false }],
   postcss: { plugins: { cssnano: false } },
   tailwindcss: { cssPath: '~/assets/css/main.css', viewer: false },
-  app: { head: { htmlAttrs: { lang: 'en' }, title: 'Emulside' } },
+  app: {
+    head: {
+      htmlAttrs: { lang: 'en' },
+      titleTemplate: '%s · Emulside',
+      meta: [{ name: 'description', content: 'Negatives on film for photographs printed by contact on hand-coated paper.' }],
+      link: [{ rel: 'icon', type: 'image/svg+xml', href: '/mark.svg' }],
+      // Before the first paint: a flash of daylight in the dim room fogs paper.
+      script: [{ innerHTML: 'if(localStorage.getItem("emulside-theme")==="dim")document.documentElement.dataset.theme="dim"', tagPosition: 'head' }],
+    },
+  },
   // Public pages are server-rendered; what stands behind sign-in is not, so that nobody's page can be cached.
   routeRules: {
-    '/studio/**': { ssr: false },
+    '/s/**': { ssr: false },
   },
   runtimeConfig: {
     session: { name: 'emulside', password: '', maxAge: 60 * 60 * 24 * 30, cookie: { sameSite: 'lax', httpOnly: true, secure: false } },

@@ -48,12 +48,14 @@ export const curve = z.object({
   readingIds: z.array(id),
   blackLightness: z.number(), whiteLightness: z.number(),
   points: z.array(curvePoint),
+  /** the reading channel's value at 1025 equal steps of ink level, clear film first: what the page's preview works from */
+  response: z.array(z.number()),
   expectedError: z.object({ nextPrint: errorFigures, curve: errorFigures }).nullable(),
   warnings: z.array(warning), notes: z.string(), createdAt: instant, inUseSince: instant.nullable(),
 })
 export type Curve = z.infer<typeof curve>
-/** In lists the points are left out. */
-export const curveBrief = curve.omit({ points: true })
+/** In lists the long tables are left out. */
+export const curveBrief = curve.omit({ points: true, response: true })
 
 const bench = '/api/studios/:studio/benches/:bench' as const
 const curves = '/api/studios/:studio/curves/:curve' as const

@@ -1,0 +1,49 @@
+import { contract } from '#build/client-contract'
+import type { StudioMembership, User } from '#shared/schemas/people'
+
+/** Who is signed in, and the studios they belong to. */
+export const useSessionStore = defineStore('session', () => {
+  const { call } = useApi()
+  const user = ref<User | null>(null)
+  const studios = ref<StudioMembership[]>([])
+
+  function take(me: { user: User, studios: StudioMembership[] }) {
+    user.value = me.user
+    studios.value = me.studios
+    rememberStudio(me.studios[0]?.slug)
+  }
+
+  /** Asks once who is signed in. Throws `not_signed_in`. */
+  async function ensure() {
+    if (!user.value) take(await call(contract.me))
+  }
+
+  async function signIn(email: string, password: string) {
+    take(await call(contract.login, { body: { email, password } }))
+  }
+
+  async function signUp(person: { name: string, email: string, password: string, studioName?: string }) {
+    const { user, studio } = await call(contract.register, { body: person })
+    take({ user, studios: [studio] })
+    return studio
+  }
+
+  async function signOut() {
+    await call(contract.logout)
+    user.value = null
+    studios.value = []
+    rememberStudio(undefined)
+  }
+
+  return { user, studios, ensure, signIn, signUp, signOut }
+})
+
+const studioKey = 'emulside-studio'
+
+/** Lets the first page offer the way back without asking the server who is there. */
+export function rememberStudio(slug: string | undefined) {
+  if (slug) localStorage.setItem(studioKey, slug)
+  else localStorage.removeItem(studioKey)
+}
+
+export const rememberedStudio = (): string | null => localStorage.getItem(studioKey)
