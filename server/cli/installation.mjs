@@ -1,0 +1,36 @@
+import { randomBytes } from 'node:crypto'
+import { existsSync, mkdirSync, readFileSync, renameSync, writeFileSync } from 'node:fs'
+import { join } from 'node:path'
+import { builtPrograms, dataFolder, inData } from './paths.mjs'
+
+const path = inData('installation.json')
+
+/** What an installation keeps to itself, 0600: the password that seals sessions and the demo's sign-in. */
+export function readInstallation() {
+  const kept = existsSync(path) ? JSON.parse(readFileSync(path, 'utf8')) : {}
+  if (kept.sessionPassword) return kept
+  return keepInstallation({ ...kept, sessionPassword: randomBytes(32).toString('hex') })
+}
+
+export function keepInstallation(kept) {
+  mkdirSync(dataFolder, { recursive: true, mode: 0o755 })
+  writeFileSync(`${path}.new`, `${JSON.stringify(kept, null, 2)}\n`, { mode: 0o600 })
+  renameSync(`${path}.new`, path)
+  return kept
+}
+
+/** The settings that all processes of an installation get; what the environment already says goes first. */
+export function serviceEnvironment({ databaseUrl, sessionPassword, programs = builtPrograms, build = 'development' }) {
+  const secure = process.env.NUXT_PUBLIC_URL?.startsWith('https:') || Boolean(process.env.TLS_CERT)
+  return {
+    HOST: '127.0.0.1', PORT: '3000', STORAGE_DIR: inData('files'), NUXT_SESSION_PASSWORD: sessionPassword,
+    NUXT_SESSION_COOKIE_SECURE: String(secure), NUXT_TELEMETRY_DISABLED: '1', BUILD: build.slice(0, 12),
+    ...process.env,
+    ...tls(), DATABASE_URL: databaseUrl, IMAGE_CHILD_PROGRAM: join(programs, 'image-child.mjs'),
+  }
+}
+
+function tls() {
+  if (!process.env.TLS_CERT) return {}
+  return { NITRO_SSL_CERT: readFileSync(process.env.TLS_CERT, 'utf8'), NITRO_SSL_KEY: readFileSync(process.env.TLS_KEY ?? '', 'utf8') }
+}

@@ -1,0 +1,91 @@
+import { join } from 'node:path'
+import { setTimeout as sleep } from 'node:timers/promises'
+import { ensureBuilt } from './build.mjs'
+import { developmentBundles, watchPrograms } from './bundles.mjs'
+import { migrateDatabase, openDatabaseServer } from './database.mjs'
+import { ensureDemo } from './demo.mjs'
+import { ensureDependencies } from './dependencies.mjs'
+import { readInstallation, serviceEnvironment } from './installation.mjs'
+import { takeLock } from './lock.mjs'
+import { builtPrograms, inData, root, webProgram } from './paths.mjs'
+import { main, say, Stop } from './run.mjs'
+import { keepRunning } from './supervisor.mjs'
+
+// `npm start` and `npm run dev`: everything from an empty checkout to a service that answers.
+
+const development = process.argv.includes('--dev')
+const graceSeconds = 15
+/** what has to be undone at the end, last first */
+const undo = []
+let ending
+
+main(async () => {
+  process.on('SIGINT', () => end(0))
+  process.on('SIGTERM', () => end(0))
+  ensureDependencies()
+  const lock = await takeLock(inData('running.json'))
+  undo.push(() => lock.release())
+  try {
+    await serve(lock)
+  }
+  catch (error) {
+    if (!(error instanceof Stop)) throw error
+    process.stderr.write(`\n${error.message}\n`)
+    await end(1)
+  }
+})
+
+async function serve(lock) {
+  const installation = readInstallation()
+  const database = await openDatabaseServer()
+  undo.push(() => database.stop())
+  const programs = development ? developmentBundles : builtPrograms
+  let restartWorker = () => {}
+  if (development) undo.push((await watchPrograms(programs, () => restartWorker())).stop)
+  const build = development ? undefined : await ensureBuilt()
+  migrateDatabase(database, programs)
+  const env = serviceEnvironment({ databaseUrl: database.url, sessionPassword: installation.sessionPassword, programs, build })
+  const demo = database.external ? undefined : ensureDemo(installation, programs, env)
+  const address = `http${process.env.TLS_CERT ? 's' : ''}://${env.HOST.includes(':') ? `[${env.HOST}]` : env.HOST}:${env.PORT}`
+  const onGivenUp = (reason) => {
+    process.stderr.write(`\n${reason}\n`)
+    end(1)
+  }
+  const common = { env, cwd: root, lock, onGivenUp }
+  const log = name => development ? undefined : inData('logs', `${name}.log`)
+  const worker = keepRunning({ ...common, name: 'worker', program: process.execPath, args: ['--enable-source-maps', join(programs, 'worker.mjs')], logFile: log('worker') })
+  restartWorker = () => worker.restart(graceSeconds)
+  const web = keepRunning({ ...common, name: 'web', program: process.execPath, args: webArguments(env), logFile: log('web') })
+  undo.push(() => Promise.all([web.stop(graceSeconds), worker.stop(graceSeconds)]))
+  await untilReady(address)
+  say(`\nEmulside is at ${process.env.NUXT_PUBLIC_URL ?? address}`)
+  if (demo) say(`Demo sign-in: ${demo.email}  password: ${demo.password}`)
+  if (!development) say(`Logs: ${inData('logs')}`)
+  say('Ctrl-C stops everything.\n')
+}
+
+function webArguments(env) {
+  if (!development) return ['--enable-source-maps', webProgram]
+  return [join(root, 'node_modules/nuxt/bin/nuxt.mjs'), 'dev', '--host', env.HOST, '--port', env.PORT, '--no-clear']
+}
+
+async function untilReady(address) {
+  const deadline = Date.now() + 120_000
+  while (Date.now() < deadline && !ending) {
+    const answer = await fetch(`${address}/api/health/ready`).catch(() => undefined)
+    if (answer?.ok) return
+    await sleep(100)
+  }
+  if (!ending) throw new Stop(`Nothing answers at ${address}. See ${inData('logs')}.`)
+}
+
+/** Stops web and worker, then the database, then gives the lock back. A second signal doesn't wait. */
+function end(code) {
+  if (ending) return process.exit(1)
+  ending = (async () => {
+    say('Stopping …')
+    for (const step of undo.reverse()) await step()
+    process.exit(code)
+  })()
+  return ending
+}
