@@ -4,7 +4,7 @@ import { join } from 'node:path'
 import { drizzle } from 'drizzle-orm/node-postgres'
 import { migrate } from 'drizzle-orm/node-postgres/migrator'
 import pg from 'pg'
-import PgBoss from 'pg-boss'
+import { installQueue } from '../jobs/queue'
 
 // The migrate step, before web and worker start. `--check` only prints how many migrations wait, and how many there are.
 
@@ -39,9 +39,7 @@ async function migrateAll(client: pg.Client, url: string): Promise<void> {
   await client.query('select pg_advisory_lock($1)', [lockKey])
   await pending(client)
   await migrate(drizzle(client), { migrationsFolder: folder })
-  const boss = new PgBoss({ connectionString: url, supervise: false, schedule: false })
-  await boss.start()
-  await boss.stop({ graceful: false, close: true })
+  await installQueue(url)
 }
 
 async function main(): Promise<void> {

@@ -1,0 +1,42 @@
+import { rmSync } from 'node:fs'
+import { join } from 'node:path'
+import type { TestProject } from 'vitest/node'
+import { ensureBuilt } from '../../server/cli/build.mjs'
+import { builtPrograms, inData } from '../../server/cli/paths.mjs'
+import { openTestCluster } from './cluster'
+import { type Application, startApplication } from './application'
+
+declare module 'vitest' {
+  export interface ProvidedContext {
+    /** one running application a vitest worker, by pool number */
+    applications: Application[]
+    /** the role that owns every test database, for tests that make clusters, databases and processes of their own */
+    databaseUrl: string
+  }
+}
+
+/**
+ * Builds once, starts a test cluster without fsync, migrates a template, and gives every vitest worker a database
+ * cloned from it and one running application. `TEST_ADDRESS` (with `DATABASE_URL`) uses a running `npm run dev` instead.
+ */
+export default async function setup(project: TestProject) {
+  const { TEST_ADDRESS, DATABASE_URL } = process.env
+  if (TEST_ADDRESS) {
+    project.provide('applications', [{ address: TEST_ADDRESS, databaseUrl: DATABASE_URL ?? '', storage: '' }])
+    project.provide('databaseUrl', DATABASE_URL ?? '')
+    return
+  }
+  await ensureBuilt()
+  const cluster = await openTestCluster()
+  const files = join(inData('test-files'), String(process.pid))
+  const count = project.vitest.config.maxWorkers
+  const running = await Promise.all(Array.from({ length: Number(count) }, (_, i) =>
+    startApplication({ programs: builtPrograms, databaseUrl: cluster.cloneTemplate(`test_${i + 1}`), storage: join(files, String(i + 1)) })))
+  project.provide('applications', running.map(({ address, databaseUrl, storage }) => ({ address, databaseUrl, storage })))
+  project.provide('databaseUrl', cluster.urlOf('template'))
+  return async () => {
+    await Promise.all(running.map(application => application.stop()))
+    cluster.stop()
+    rmSync(files, { recursive: true, force: true })
+  }
+}
