@@ -44,7 +44,6 @@ export default defineNuxtConfig({
       crossOriginEmbedderPolicy: false,
     },
   },
-  nitro: { preset: 'node-server' },
   typescript: { strict: true },
   vite: { build: { sourcemap: false } },
 })

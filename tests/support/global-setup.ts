@@ -2,6 +2,7 @@ import { rmSync } from 'node:fs'
 import { join } from 'node:path'
 import type { TestProject } from 'vitest/node'
 import { ensureBuilt } from '../../server/cli/build.mjs'
+import { takeLock } from '../../server/cli/lock.mjs'
 import { builtPrograms, inData } from '../../server/cli/paths.mjs'
 import { openTestCluster } from './cluster'
 import { type Application, startApplication } from './application'
@@ -26,17 +27,35 @@ export default async function setup(project: TestProject) {
     project.provide('databaseUrl', DATABASE_URL ?? '')
     return
   }
+  const started = await (shared.harness ??= start(Number(project.vitest.config.maxWorkers)))
+  project.provide('applications', started.applications)
+  project.provide('databaseUrl', started.databaseUrl)
+  shared.users += 1
+  return async () => {
+    shared.users -= 1
+    if (shared.users === 0) await started.stop()
+  }
+}
+
+/** Two vitest projects may need it in one run. */
+const shared = ((globalThis as { emulsideTests?: { harness?: ReturnType<typeof start>, users: number } }).emulsideTests ??= { users: 0 })
+
+async function start(count: number) {
+  const lock = await takeLock(inData('test-running.json'))
   await ensureBuilt()
   const cluster = await openTestCluster()
   const files = join(inData('test-files'), String(process.pid))
-  const count = project.vitest.config.maxWorkers
-  const running = await Promise.all(Array.from({ length: Number(count) }, (_, i) =>
+  const running = await Promise.all(Array.from({ length: count }, (_, i) =>
     startApplication({ programs: builtPrograms, databaseUrl: cluster.cloneTemplate(`test_${i + 1}`), storage: join(files, String(i + 1)) })))
-  project.provide('applications', running.map(({ address, databaseUrl, storage }) => ({ address, databaseUrl, storage })))
-  project.provide('databaseUrl', cluster.urlOf('template'))
-  return async () => {
-    await Promise.all(running.map(application => application.stop()))
-    cluster.stop()
-    rmSync(files, { recursive: true, force: true })
+  for (const { pid } of running.flatMap(({ children }) => children)) lock.record(pid)
+  return {
+    applications: running.map(({ address, databaseUrl, storage }) => ({ address, databaseUrl, storage })),
+    databaseUrl: cluster.urlOf('scratch'),
+    async stop() {
+      await Promise.all(running.map(application => application.stop()))
+      cluster.stop()
+      rmSync(files, { recursive: true, force: true })
+      lock.release()
+    },
   }
 }
