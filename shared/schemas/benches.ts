@@ -8,6 +8,7 @@ export type Process = z.infer<typeof process>
 
 export const readingChannels = ['lightness', 'density-blue', 'density-green', 'density-red', 'colour-path'] as const
 export const readingChannel = z.enum(readingChannels)
+export type ReadingChannel = z.infer<typeof readingChannel>
 
 /** The wet and coating side of a bench. */
 export const recipe = z.strictObject({

@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { leastMixLuminance, mixLuminance } from '../tone/mix'
 import { process } from './benches'
 import { aim, warning, workState } from './curves'
 import { endpoint } from './endpoint'
@@ -12,6 +13,7 @@ export const crop = z.strictObject({ x: fraction, y: fraction, width: fraction.g
 /** Each has its neutral value as default; `shared/tone/adjustments.ts` holds the formulas. */
 export const adjustments = z.strictObject({
   mix: z.strictObject({ red: z.number().min(-2).max(3).default(1), green: z.number().min(-2).max(3).default(1), blue: z.number().min(-2).max(3).default(1) })
+    .refine(mix => mixLuminance(mix) > leastMixLuminance, 'This mix leaves no tones. Raise one of the channels.')
     .prefault({}),
   blackPoint: z.number().min(0).max(0.9).default(0),
   whitePoint: z.number().min(0.1).max(1).default(1),

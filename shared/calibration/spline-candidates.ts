@@ -1,0 +1,76 @@
+import { differencePenalty } from './bspline'
+import { factorise, logDeterminant, solveLower, solveUpper } from './cholesky'
+
+/** Order of the penalised differences: what is not bent is a parabola. */
+export const penaltyOrder = 3
+/** Smoothing weights that are tried: 10⁻⁶ … 10⁷ by half powers of ten. */
+const smoothings = Array.from({ length: 27 }, (_, i) => 10 ** (-6 + i / 2))
+/** No reading is finer than this, L*; keeps noise-free data from a vanishing residual. */
+const leastDeviation = 0.01
+
+/** A penalised spline for one basis and one smoothing weight. */
+export interface SplineCandidate {
+  /** which of the bases */
+  basis: number
+  smoothing: number
+  /** −2 ln of its restricted likelihood, but for a constant; smaller is better */
+  criterion: number
+  coefficients: Float64Array
+  /** residual variance */
+  variance: number
+  /** Cholesky factor of BᵀB + λ·DᵀD */
+  factor: Float64Array
+}
+
+/**
+ * P-splines of values `y` over each basis (rows × columns, by rows) with each smoothing weight, judged by restricted maximum
+ * likelihood: (N−3) ln(rss/(N−3)) + ln|M| − (K−3) ln λ with M = BᵀB + λ·D₃ᵀD₃, α = M⁻¹Bᵀy, rss = yᵀy − yᵀBα
+ * (Wood, Generalized Additive Models, 2nd ed., 6.2.6, of a Gaussian model with its variance profiled out).
+ */
+export function splineCandidates(bases: readonly Float64Array[], y: Float64Array): SplineCandidate[] {
+  const columns = bases[0]!.length / y.length
+  const penalty = differencePenalty(columns, penaltyOrder)
+  let square = 0
+  for (const value of y) square += value * value
+  return bases.flatMap((basis, index) => {
+    const [gram, moments] = normalEquations(basis, y, columns)
+    return smoothings.map(smoothing => ({ basis: index, smoothing, ...penalisedFit(gram, moments, square, penalty, smoothing, y.length) }))
+  })
+}
+
+function penalisedFit(gram: Float64Array, moments: Float64Array, square: number, penalty: Float64Array, smoothing: number, rows: number) {
+  const columns = moments.length
+  const factor = new Float64Array(gram.length)
+  for (let i = 0; i < factor.length; i++) factor[i] = gram[i]! + smoothing * penalty[i]!
+  const ridge = 1e-9 * trace(gram, columns) / columns
+  for (let i = 0; i < columns; i++) factor[i * columns + i]! += ridge
+  factorise(factor, columns)
+  const coefficients = solveUpper(factor, columns, solveLower(factor, columns, moments.slice()))
+  let explained = 0
+  for (let i = 0; i < columns; i++) explained += moments[i]! * coefficients[i]!
+  const freedom = Math.max(1, rows - penaltyOrder)
+  const variance = Math.max(square - explained, freedom * leastDeviation ** 2) / freedom
+  const criterion = freedom * Math.log(variance) + logDeterminant(factor, columns) - (columns - penaltyOrder) * Math.log(smoothing)
+  return { criterion, coefficients, variance, factor }
+}
+
+/** BᵀB (lower and upper) and Bᵀy. */
+function normalEquations(basis: Float64Array, y: Float64Array, columns: number): [Float64Array, Float64Array] {
+  const [gram, moments] = [new Float64Array(columns * columns), new Float64Array(columns)]
+  for (let row = 0, at = 0; row < y.length; row++, at += columns) {
+    for (let i = 0; i < columns; i++) {
+      const value = basis[at + i]!
+      if (value === 0) continue
+      moments[i]! += value * y[row]!
+      for (let j = 0; j <= i; j++) gram[i * columns + j]! += value * basis[at + j]!
+    }
+  }
+  for (let i = 0; i < columns; i++) for (let j = i + 1; j < columns; j++) gram[i * columns + j] = gram[j * columns + i]!
+  return [gram, moments]
+}
+
+function trace(matrix: Float64Array, n: number): number {
+  let sum = 0
+  for (let i = 0; i < n; i++) sum += matrix[i * n + i]!
+  return sum
+}
