@@ -3,12 +3,10 @@ export type LengthUnit = 'mm' | 'inch'
 
 const theme = ref<Theme>('light')
 const lengthUnit = ref<LengthUnit>('mm')
-let isRead = false
-
 /** How this browser shows things: light or dim, millimetres or inches. Kept in the browser, not in the account. */
 export function usePreferences() {
-  if (import.meta.client && !isRead) {
-    isRead = true
+  /** Once, after the first page stands: what the server rendered knows nothing of this browser. */
+  function read() {
     theme.value = document.documentElement.dataset.theme === 'dim' ? 'dim' : 'light'
     lengthUnit.value = localStorage.getItem('emulside-unit') === 'inch' ? 'inch' : 'mm'
   }
@@ -21,5 +19,5 @@ export function usePreferences() {
     lengthUnit.value = next
     localStorage.setItem('emulside-unit', next)
   }
-  return { theme: readonly(theme), lengthUnit: readonly(lengthUnit), setTheme, setLengthUnit }
+  return { read, theme: readonly(theme), lengthUnit: readonly(lengthUnit), setTheme, setLengthUnit }
 }
