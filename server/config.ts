@@ -23,6 +23,8 @@ export const settingsSchema = z.object({
   STUDIO_MAX_BYTES: z.coerce.number().int().positive().default(50_000_000_000),
   FREE_DISK_MIN_BYTES: z.coerce.number().int().min(0).default(1_000_000_000),
   RENDER_CACHE_MAX_BYTES: z.coerce.number().int().positive().default(20_000_000_000),
+  /** thumbnails, proxies and forecasts */
+  PICTURE_CACHE_MAX_BYTES: z.coerce.number().int().positive().default(4_000_000_000),
   /** the image child's bundled program; beside the server in production, set by the start command */
   IMAGE_CHILD_PROGRAM: z.string().min(1),
   CHILD_ADDRESS_SPACE_BYTES: z.coerce.number().int().positive().default(8_000_000_000),

@@ -46,8 +46,6 @@ export interface FilmOrder {
 
 /** Calls to an image child; paths are absolute. Each answers or fails with a ComputeError's code. */
 export interface ImageCalls {
-  /** what stands in a render key: the engine's own version and its library's */
-  version: { in: Record<string, never>, out: { engine: string, libvips: string } }
   probe: { in: { path: string }, out: PictureFacts }
   /** upright black-and-white JPEG, `longerSide` pixels at most */
   thumbnail: { in: { path: string, target: string, longerSide: number }, out: { width: number, height: number } }

@@ -10,7 +10,7 @@ export function bodyHashOf({ id: _, ...body }: Record<string, unknown>): string 
   return createHash('sha256').update(canonicalJson(body)).digest('hex')
 }
 
-function canonicalJson(value: unknown): string {
+export function canonicalJson(value: unknown): string {
   return JSON.stringify(value, (_key, inner: unknown) => inner && typeof inner === 'object' && !Array.isArray(inner)
     ? Object.fromEntries(Object.entries(inner).sort(([a], [b]) => a < b ? -1 : 1))
     : inner)

@@ -10,6 +10,8 @@ export interface TemporaryFile {
   /** puts it under its key as well and stays: a sweep that finds it later knows what was in the making */
   keepBeside: (key: string) => Promise<void>
   discard: () => Promise<void>
+  /** leaves it to the sweep: for when it can't be told whether its record was committed */
+  abandon: () => void
 }
 
 const renewTemporaryMs = 1000
@@ -59,8 +61,10 @@ export function openStorage(folder: string) {
           await link(path, await preparedPath(key))
         },
         async discard() {
+          if (ours.delete(path)) await rm(path, { force: true })
+        },
+        abandon() {
           ours.delete(path)
-          await rm(path, { force: true })
         },
       }
     },

@@ -24,3 +24,6 @@ export interface Endpoint {
 
 /** Keeps the literal types of one row of the contract. */
 export const endpoint = <const E extends Endpoint>(row: E): E => row
+
+/** What a streamed file answers beside 200: a part of it, known already, or a range that it does not have. */
+export const streamed = (mediaTypes: readonly string[]) => ({ 206: mediaTypes, 304: null, 416: null })

@@ -2,7 +2,7 @@ import { z } from 'zod'
 import { leastMixLuminance, mixLuminance } from '../tone/mix'
 import { process } from './benches'
 import { aim, warning, workState } from './curves'
-import { endpoint } from './endpoint'
+import { endpoint, streamed } from './endpoint'
 import { limits } from './limits'
 import { fraction, id, instant, listOf, listQuery, name, newId, revision, sideMm } from './primitives'
 
@@ -78,8 +78,8 @@ export const negativeEndpoints = {
   negative: endpoint({ method: 'GET', path: `${root}/:negative`, access: 'member', summary: 'One negative.', answers: { 200: negative } }),
   changeNegative: endpoint({ method: 'PATCH', path: `${root}/:negative`, access: 'member', summary: 'Change its settings.', body: negativePatch, answers: { 200: negative } }),
   archiveNegative: endpoint({ method: 'DELETE', path: `${root}/:negative`, access: 'member', summary: 'Put a negative away.', answers: { 204: null } }),
-  negativeFile: endpoint({ method: 'GET', path: `${root}/:negative/file`, access: 'member', summary: 'The film file; 202 while it is being made. HEAD, Range, ETag.', query: z.strictObject({ format: filmFormat.default('pdf') }), answers: { 200: ['image/tiff', 'image/png', 'application/pdf'], 202: render } }),
+  negativeFile: endpoint({ method: 'GET', path: `${root}/:negative/file`, access: 'member', summary: 'The film file; 202 while it is being made. HEAD, Range, ETag.', query: z.strictObject({ format: filmFormat.default('pdf') }), answers: { 200: ['image/tiff', 'image/png', 'application/pdf'], 202: render, ...streamed(['image/tiff', 'image/png', 'application/pdf']) } }),
   makeRender: endpoint({ method: 'POST', path: `${root}/:negative/renders`, access: 'member', summary: 'Have a film file made, or made again after it failed.', body: z.strictObject({ format: filmFormat }), answers: { 200: render, 202: render } }),
-  negativeForecast: endpoint({ method: 'GET', path: `${root}/:negative/forecast`, access: 'member', summary: 'The expected print as a picture.', query: z.strictObject({ width: z.coerce.number().int().min(16).max(2400).default(600), state: z.enum(['photo', 'film', 'print']).default('print') }), answers: { 200: ['image/png'] } }),
-  negativePrintCard: endpoint({ method: 'GET', path: `${root}/:negative/print-card`, access: 'member', summary: 'What to check and set before printing this film.', answers: { 200: z.object({ title: z.string(), lines: z.array(z.object({ label: z.string(), text: z.string() })) }) } }),
+  negativeForecast: endpoint({ method: 'GET', path: `${root}/:negative/forecast`, access: 'member', summary: 'The expected print as a picture.', query: z.strictObject({ width: z.coerce.number().int().min(16).max(2400).default(600), state: z.enum(['photo', 'film', 'print']).default('print') }), answers: { 200: ['image/png'], ...streamed(['image/png']) } }),
+  negativePrintCard: endpoint({ method: 'GET', path: `${root}/:negative/print-card`, access: 'member', summary: 'What to check and set before printing this film.', query: z.strictObject({ format: filmFormat.default('pdf') }), answers: { 200: z.object({ title: z.string(), lines: z.array(z.object({ label: z.string(), text: z.string() })) }) } }),
 }

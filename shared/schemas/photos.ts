@@ -1,5 +1,5 @@
 import { z } from 'zod'
-import { endpoint } from './endpoint'
+import { endpoint, streamed } from './endpoint'
 import { fraction, id, instant, listOf, listQuery, name, revision } from './primitives'
 
 export const photo = z.object({
@@ -13,7 +13,8 @@ export type Photo = z.infer<typeof photo>
 /** `x,y,width,height` in fractions of the upright picture after quarter turns and straightening. */
 export const region = z.string().regex(/^(?:\d*\.?\d+(?:e-?\d+)?,){3}\d*\.?\d+(?:e-?\d+)?$/i, 'Write the region as x,y,width,height.')
   .transform(s => s.split(',').map(Number) as [number, number, number, number])
-  .pipe(z.tuple([fraction, fraction, fraction, fraction]))
+  .pipe(z.tuple([fraction, fraction, fraction.gt(0), fraction.gt(0)]))
+  .refine(([x, y, width, height]) => x + width <= 1 + 1e-9 && y + height <= 1 + 1e-9, 'The region reaches beyond the picture.')
 
 export const proxyQuery = z.strictObject({
   width: z.coerce.number().int().min(16).max(2400).default(1200),
@@ -35,7 +36,7 @@ export const photoEndpoints = {
   changePhoto: endpoint({ method: 'PATCH', path: `${root}/:photo`, access: 'member', summary: 'Rename a photo.', body: z.strictObject({ name, revision }), answers: { 200: photo } }),
   binPhoto: endpoint({ method: 'DELETE', path: `${root}/:photo`, access: 'member', summary: 'Put a photo into the bin.', answers: { 204: null } }),
   restorePhoto: endpoint({ method: 'POST', path: `${root}/:photo/restore`, access: 'member', summary: 'Take it out of the bin.', answers: { 200: photo } }),
-  photoFile: endpoint({ method: 'GET', path: `${root}/:photo/file`, access: 'member', summary: 'The original, byte for byte.', answers: { 200: ['image/jpeg', 'image/png'] } }),
-  photoThumbnail: endpoint({ method: 'GET', path: `${root}/:photo/thumbnail`, access: 'member', summary: 'A small black-and-white picture, 480 px on its longer side.', answers: { 200: ['image/jpeg'] } }),
-  photoProxy: endpoint({ method: 'GET', path: `${root}/:photo/proxy`, access: 'member', summary: 'Working-space channels, 16 bit little-endian, interleaved red, green, blue; `X-Width` and `X-Height` give the pixels.', query: proxyQuery, answers: { 200: ['application/octet-stream'] } }),
+  photoFile: endpoint({ method: 'GET', path: `${root}/:photo/file`, access: 'member', summary: 'The original, byte for byte.', answers: { 200: ['image/jpeg', 'image/png'], ...streamed(['image/jpeg', 'image/png']) } }),
+  photoThumbnail: endpoint({ method: 'GET', path: `${root}/:photo/thumbnail`, access: 'member', summary: 'A small black-and-white picture, 480 px on its longer side.', answers: { 200: ['image/jpeg'], ...streamed(['image/jpeg']) } }),
+  photoProxy: endpoint({ method: 'GET', path: `${root}/:photo/proxy`, access: 'member', summary: 'Working-space channels, 16 bit little-endian, interleaved red, green, blue; `X-Width` and `X-Height` give the pixels.', query: proxyQuery, answers: { 200: ['application/octet-stream'], ...streamed(['application/octet-stream']) } }),
 }

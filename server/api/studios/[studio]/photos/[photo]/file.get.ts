@@ -1,0 +1,12 @@
+import { photoEndpoints } from '#shared/schemas/photos'
+import { fileNameFrom } from '../../../../../services/file-names'
+import { requirePhoto } from '../../../../../services/photos'
+import { storageKeys } from '../../../../../storage'
+
+export default defineRoute(photoEndpoints.photoFile, async ({ event, studio, idParam }) => {
+  const photo = await requirePhoto(studio, idParam('photo'))
+  await sendStoredFile(event, {
+    key: storageKeys.original(photo.studioId, photo.id), bytes: photo.bytes, etag: photo.sha256,
+    contentType: `image/${photo.format}`, cacheControl: privateForever, fileName: fileNameFrom(photo.name, photo.format === 'jpeg' ? 'jpg' : 'png'),
+  })
+})

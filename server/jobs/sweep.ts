@@ -1,0 +1,75 @@
+import { and, eq, ne, sql } from 'drizzle-orm'
+import { readSettings } from '../config'
+import { db } from '../db/client'
+import { photos, renders } from '../db/schema'
+import { storage } from '../services/storage'
+import { storageKeys } from '../storage'
+
+const olderThan = (seconds: number) => ({ changedAt }: { changedAt: number }) => changedAt < Date.now() - 1000 * seconds
+
+/** Removes temporary files whose owner has not renewed them for two leases, with what they left half done. */
+export async function sweepTemporaryFiles(leaseSeconds: number): Promise<string[]> {
+  const stale = (await storage().list('temporary')).filter(olderThan(2 * leaseSeconds))
+  for (const { key } of stale) {
+    const [, studioId, photoId] = /^temporary\/photo_([^_.]+)_([^_.]+)\./.exec(key) ?? []
+    if (studioId && photoId) await removeUnrecorded(studioId, photoId)
+    await storage().remove(key)
+  }
+  return stale.map(({ key }) => key)
+}
+
+/** An upload that was broken off after its file was put in place, before its row was committed. */
+async function removeUnrecorded(studioId: string, photoId: string): Promise<void> {
+  const [row] = await db().select({ id: photos.id }).from(photos).where(and(eq(photos.studioId, studioId), eq(photos.id, photoId)))
+  if (row) return
+  await storage().remove(storageKeys.original(studioId, photoId))
+  await storage().remove(storageKeys.thumbnail(studioId, photoId))
+}
+
+/** Removes film files that no row names: their worker died between putting them in place and handing them in. */
+export async function sweepFilms(leaseSeconds: number): Promise<string[]> {
+  const files = (await storage().list('films')).filter(olderThan(2 * leaseSeconds))
+  const rows = await db().select({ studioId: renders.studioId, key: renders.renderKey, format: renders.format }).from(renders).where(ne(renders.state, 'failed'))
+  const named = new Set(rows.map(row => storageKeys.film(row.studioId, row.key, row.format)))
+  const orphans = files.map(({ key }) => key).filter(key => !named.has(key))
+  for (const key of orphans) await storage().remove(key)
+  return orphans
+}
+
+/** Puts the films that were not used for longest out of the cache, until it fits its size; pinned ones stay. */
+export async function shrinkFilmCache(maxBytes = readSettings().RENDER_CACHE_MAX_BYTES): Promise<number> {
+  let removed = 0
+  while (await filmBytes() > maxBytes && await removeLeastUsed()) removed++
+  return removed
+}
+
+async function filmBytes(): Promise<number> {
+  const [row] = await db().select({ bytes: sql<string>`coalesce(sum(${renders.bytes}), 0)` }).from(renders).where(eq(renders.state, 'ready'))
+  return Number(row!.bytes)
+}
+
+/** File first, then row: a row whose file is gone is mended when it is asked for, a file without a row is swept. */
+async function removeLeastUsed(): Promise<boolean> {
+  return db().transaction(async (tx) => {
+    const [row] = await tx.select().from(renders).where(and(eq(renders.state, 'ready'), eq(renders.pinned, false)))
+      .orderBy(sql`coalesce(${renders.lastUsedAt}, ${renders.readyAt})`).limit(1).for('update', { skipLocked: true })
+    if (!row) return false
+    await storage().remove(storageKeys.film(row.studioId, row.renderKey, row.format))
+    await tx.delete(renders).where(and(eq(renders.studioId, row.studioId), eq(renders.id, row.id)))
+    return true
+  })
+}
+
+/** The same for thumbnails, proxies and forecasts, which no row names: the least used go first. */
+export async function shrinkPictureCache(maxBytes = readSettings().PICTURE_CACHE_MAX_BYTES): Promise<number> {
+  const files = await Promise.all((await storage().list('cache')).map(async file => ({ ...file, bytes: (await storage().stat(file.key))?.size ?? 0 })))
+  let bytes = files.reduce((sum, file) => sum + file.bytes, 0)
+  let removed = 0
+  for (const file of files.sort((a, b) => a.changedAt - b.changedAt)) {
+    if (bytes <= maxBytes) break
+    await storage().remove(file.key)
+    bytes -= file.bytes
+    removed++
+  }
+  return removed
+}

@@ -1,0 +1,106 @@
+import { hostname } from 'node:os'
+import { setTimeout as sleep } from 'node:timers/promises'
+import PgBoss from 'pg-boss'
+import type { Settings } from '../config'
+import { openDatabase } from '../db/client'
+import { closeImageChild } from '../services/image-child'
+import { jobHandlers, requireHandlers, type JobContext, type JobHandler } from './handlers'
+import { jobNames, type JobName } from './names'
+import { makeNextRender } from './render-work'
+import { shrinkFilmCache, shrinkPictureCache, sweepFilms, sweepTemporaryFiles } from './sweep'
+
+export type Report = (event: string, details: Record<string, unknown>) => void
+export interface Worker { stop: () => Promise<void> }
+
+/** Work under way may end by itself for this long when the worker is told to stop. */
+const graceSeconds = 10
+const tidySeconds = 600
+
+/**
+ * Makes films one after the other, as the rows ask for it: woken by jobs, and looking by itself every few seconds for
+ * what a job did not announce (a row whose worker died). Sweeps what dead processes have left.
+ */
+export async function runWorker(settings: Settings, report: Report = () => {}): Promise<Worker> {
+  requireHandlers()
+  openDatabase(settings.DATABASE_URL)
+  const alarm = openAlarm()
+  const boss = await listenForJobs(settings.DATABASE_URL, { wake: alarm.ring }, report)
+  const noMore = new AbortController()
+  const breakOff = new AbortController()
+  const owner = `${hostname().slice(0, 30).replace(/[^\w-]/g, '-')}-${process.pid}-${crypto.randomUUID().slice(0, 8)}`
+  const lease = { owner, leaseSeconds: settings.LEASE_SECONDS, renewSeconds: settings.LEASE_RENEW_SECONDS }
+
+  const films = forever(noMore.signal, report, async () => {
+    const made = await makeNextRender(lease, breakOff.signal, report)
+    if (made) await shrinkFilmCache(settings.RENDER_CACHE_MAX_BYTES)
+    else await alarm.next(settings.POLL_SECONDS, noMore.signal)
+  })
+  const sweeping = forever(noMore.signal, report, async () => {
+    const swept = await sweepTemporaryFiles(settings.LEASE_SECONDS)
+    if (swept.length) report('sweep.temporary', { files: swept.length })
+    await pause(settings.LEASE_SECONDS, noMore.signal)
+  })
+  const tidying = forever(noMore.signal, report, async () => {
+    const orphans = await sweepFilms(settings.LEASE_SECONDS)
+    if (orphans.length) report('sweep.films', { files: orphans.length })
+    await shrinkPictureCache(settings.PICTURE_CACHE_MAX_BYTES)
+    await pause(tidySeconds, noMore.signal)
+  })
+
+  return {
+    async stop() {
+      noMore.abort()
+      await boss.stop({ graceful: false })
+      const late = setTimeout(() => breakOff.abort(), 1000 * graceSeconds)
+      await Promise.all([films, sweeping, tidying])
+      clearTimeout(late)
+      await closeImageChild()
+    },
+  }
+}
+
+async function listenForJobs(databaseUrl: string, context: JobContext, report: Report): Promise<PgBoss> {
+  const boss = new PgBoss({ connectionString: databaseUrl, max: 2, migrate: false, schedule: false })
+  boss.on('error', error => report('queue.error', { cause: error.message }))
+  await boss.start()
+  for (const name of jobNames) await handleJobs(boss, name, context)
+  return boss
+}
+
+async function handleJobs<N extends JobName>(boss: PgBoss, name: N, context: JobContext): Promise<void> {
+  const handle = jobHandlers[name] as JobHandler<N>
+  await boss.work<Parameters<JobHandler<N>>[0] & object>(name, { pollingIntervalSeconds: 0.5, batchSize: 20 }, async (jobs) => {
+    for (const job of jobs) await handle(job.data, context)
+  })
+}
+
+/** Repeats a step until told not to; a step that fails is reported and tried again after a second. */
+async function forever(end: AbortSignal, report: Report, step: () => Promise<void>): Promise<void> {
+  while (!end.aborted) {
+    await step().catch(async (error: Error) => {
+      report('worker.error', { cause: error.message })
+      await pause(1, end)
+    })
+  }
+}
+
+const pause = (seconds: number, end: AbortSignal): Promise<void> => sleep(1000 * seconds, undefined, { signal: end }).catch(() => {})
+
+/** Rings may come while nobody waits; the next wait then ends at once. */
+function openAlarm() {
+  let rung = false
+  let awake: (() => void) | undefined
+  return {
+    ring() {
+      rung = true
+      awake?.()
+    },
+    async next(seconds: number, end: AbortSignal): Promise<void> {
+      const early = new AbortController()
+      awake = () => early.abort()
+      if (!rung) await pause(seconds, AbortSignal.any([end, early.signal]))
+      awake = undefined
+      rung = false
+    },
+  }
+}

@@ -1,0 +1,128 @@
+import { and, eq, sql } from 'drizzle-orm'
+import { v7 as uuidv7 } from 'uuid'
+import type { z } from 'zod'
+import { ComputeError } from '#shared/errors'
+import type { Photo, refusedFile } from '#shared/schemas/photos'
+import { readSettings } from '../config'
+import { db, type Queryable, type Transaction } from '../db/client'
+import { photos, studios } from '../db/schema'
+import type { PictureFacts } from '../image/protocol'
+import { storageKeys, type TemporaryFile } from '../storage'
+import type { StudioAccess } from './access'
+import { recordEvent } from './audit'
+import { nameFromFileName } from './file-names'
+import { hint } from './hints'
+import { imageChild } from './image-child'
+import { setBinned, showPhoto, type PhotoRow } from './photos'
+import { storage } from './storage'
+
+export const thumbnailLongerSidePixels = 480
+
+/** A picture file that has arrived whole, under a temporary name, or why it was not taken. */
+export interface Arrival { id: string, fileName: string, bytes: number, sha256: string, file?: TemporaryFile, refusal?: ComputeError }
+type WholeArrival = Arrival & { file: TemporaryFile }
+type Refused = z.infer<typeof refusedFile>
+export interface Intake { items: Photo[], refused: Refused[], anyNew: boolean }
+
+/** The label of an arriving photo's temporary file: a sweep learns from it what was in the making. */
+export const arrivalLabel = (studioId: string, photoId: string) => `photo_${studioId}_${photoId}`
+export const newPhotoId = (): string => uuidv7()
+
+/** Keeps count, piece by piece, of what the studio may still store and the disk still takes; throws where either ends. */
+export async function roomFor(studio: StudioAccess, expectedBytes: number): Promise<{ take: (bytes: number) => Promise<void> }> {
+  const [row] = await db().select({ maxBytes: studios.maxBytes }).from(studios).where(eq(studios.id, studio.id))
+  let studioBytes = row!.maxBytes - await bytesUsed(db(), studio.id)
+  let unchecked = 0
+  const checkDisk = async () => {
+    unchecked = 0
+    if (await storage().freeBytes() - expectedBytes < readSettings().FREE_DISK_MIN_BYTES) throw diskFull()
+    expectedBytes = 0
+  }
+  await checkDisk()
+  return {
+    async take(bytes) {
+      studioBytes -= bytes
+      unchecked += bytes
+      if (studioBytes < 0) throw studioFull()
+      if (unchecked > 32e6) await checkDisk()
+    },
+  }
+}
+
+const studioFull = () => new ComputeError('studio_full', 'The studio has no room left for this picture. Ask its owner for more, or erase what is no longer needed.')
+export const diskFull = () => new ComputeError('disk_full', 'The disk of this installation is nearly full, so this picture was not stored. Tell the studio’s owner.')
+
+async function bytesUsed(on: Queryable, studioId: string): Promise<number> {
+  const [row] = await on.select({ used: sql<string>`coalesce(sum(${photos.bytes}), 0)` }).from(photos).where(eq(photos.studioId, studioId))
+  return Number(row!.used)
+}
+
+/** Takes what is good; what is not is named with its reason. Throws the first reason when nothing could be taken. */
+export async function takePhotos(studio: StudioAccess, arrivals: Arrival[]): Promise<Intake> {
+  const intake: Intake = { items: [], refused: [], anyNew: false }
+  const refusals: ComputeError[] = []
+  for (const arrival of arrivals) {
+    try {
+      if (!arrival.file || arrival.refusal) throw arrival.refusal
+      const { photo, isNew } = await takePhoto(studio, { ...arrival, file: arrival.file })
+      intake.items.push(photo)
+      intake.anyNew ||= isNew
+    }
+    catch (error) {
+      if (!(error instanceof ComputeError)) throw error
+      refusals.push(error)
+      intake.refused.push({ name: nameFromFileName(arrival.fileName, 'Unnamed file'), code: error.code, message: error.message })
+    }
+  }
+  if (intake.items.length === 0) throw refusals[0] ?? new ComputeError('invalid_input', 'There was no picture in the upload. Send each one as a part named `file`.')
+  return intake
+}
+
+/** The same uploader's same bytes are the same photo, taken out of the bin if it lay there. */
+async function takePhoto(studio: StudioAccess, arrival: WholeArrival): Promise<{ photo: Photo, isNew: boolean }> {
+  const known = await sameBytes(db(), studio, arrival.sha256)
+  if (known) return { photo: await db().transaction(tx => bringBack(tx, known)), isNew: false }
+
+  const { path } = arrival.file
+  const facts = await imageChild().call('probe', { path })
+  const thumbnail = await storage().temporary('thumbnail')
+  try {
+    // Made now, because it reads the picture to its end: a truncated one is found out before it is stored.
+    await imageChild().call('thumbnail', { path, target: thumbnail.path, longerSide: thumbnailLongerSidePixels })
+    return await db().transaction(tx => store(tx, studio, arrival, facts, thumbnail))
+  }
+  catch (error) {
+    if (!(error instanceof ComputeError)) arrival.file.abandon()
+    throw error
+  }
+  finally {
+    await thumbnail.discard()
+  }
+}
+
+/** Files first, row last. The row's lock on the studio keeps its limit, and equal uploads, one after the other. */
+async function store(tx: Transaction, studio: StudioAccess, arrival: WholeArrival, facts: PictureFacts, thumbnail: TemporaryFile) {
+  const [{ maxBytes }] = await tx.select({ maxBytes: studios.maxBytes }).from(studios).where(eq(studios.id, studio.id)).for('no key update') as [{ maxBytes: number }]
+  const known = await sameBytes(tx, studio, arrival.sha256)
+  if (known) return { photo: await bringBack(tx, known), isNew: false }
+  if (await bytesUsed(tx, studio.id) + arrival.bytes > maxBytes) throw studioFull()
+
+  const [row] = await tx.insert(photos).values({
+    studioId: studio.id, id: arrival.id, uploaderId: studio.personId, name: nameFromFileName(arrival.fileName),
+    format: facts.format, bytes: arrival.bytes, sha256: arrival.sha256,
+    width: facts.width, height: facts.height, orientation: facts.orientation, colourProfile: facts.colourProfile.slice(0, 120),
+  }).returning()
+  await recordEvent(tx, { studioId: studio.id, userId: studio.personId, kind: 'photo.uploaded', recordId: arrival.id, details: { bytes: arrival.bytes } })
+  await hint(tx, { studioId: studio.id, topic: 'photos', id: arrival.id, onlyFor: studio.personId })
+  await thumbnail.keep(storageKeys.thumbnail(studio.id, arrival.id))
+  await arrival.file.keepBeside(storageKeys.original(studio.id, arrival.id))
+  return { photo: showPhoto(row!), isNew: true }
+}
+
+async function sameBytes(on: Queryable, studio: StudioAccess, sha256: string): Promise<PhotoRow | undefined> {
+  const [row] = await on.select().from(photos).where(and(eq(photos.studioId, studio.id), eq(photos.uploaderId, studio.personId), eq(photos.sha256, sha256)))
+  return row
+}
+
+const bringBack = async (on: Queryable, photo: PhotoRow): Promise<Photo> =>
+  photo.binnedAt === null ? showPhoto(photo) : setBinned(on, photo, false)
