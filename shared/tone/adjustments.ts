@@ -18,6 +18,9 @@ export const neutralAdjustments: Readonly<ToneAdjustments> = { blackPoint: 0, wh
 
 /** The least distance of white point and black point. */
 export const leastPointDistance = 0.05
+/** Whether the white point lies far enough above the black point; 0.95 and 0.9 do, whatever their last bit. */
+export const arePointsApart = ({ blackPoint, whitePoint }: Pick<ToneAdjustments, 'blackPoint' | 'whitePoint'>): boolean =>
+  whitePoint - blackPoint >= leastPointDistance - 1e-9
 /** Steepness of the sigmoid at contrast ±1. */
 const fullContrast = 4
 /** Contrast below this is neutral: the sigmoid's own rounding would exceed its effect. */
@@ -29,7 +32,7 @@ const leastContrast = 1e-6
  * 1. points: t₁ = (t − black) / (white − black), clipped to 0 … 1;
  * 2. middle: t₂ = t₁^(2^−midtone), which keeps 0 and 1;
  * 3. contrast, with a = 4·|contrast|: t₃ = ½ + ½·tanh(a(t₂ − ½)) / tanh(a/2) where positive, and that function's inverse,
- *    t₃ = ½ + artanh((2t₂ − 1)·tanh(a/2)) / a, where negative; both keep 0, ½ and 1.
+ *    t₃ = ½ + artanh((2t₂ − 1)·tanh(a/2)) / a, where negative; both keep 0, ½ and 1. Below |contrast| 10⁻⁶ it is left out.
  *
  * @throws ComputeError `invalid_input` for a tone or a setting outside its range.
  */
@@ -64,7 +67,7 @@ function requireAdjustments({ blackPoint, whitePoint, midtone, contrast }: ToneA
   requireNumber(whitePoint, 'The white point', 0.1, 1)
   requireNumber(midtone, 'The middle tones', -1, 1)
   requireNumber(contrast, 'Contrast', -1, 1)
-  if (whitePoint - blackPoint < leastPointDistance - Number.EPSILON)
+  if (!arePointsApart({ blackPoint, whitePoint }))
     throw new ComputeError('invalid_input', `The white point must lie at least ${leastPointDistance} above the black point.`)
 }
 
@@ -78,12 +81,14 @@ function bend(tones: Float64Array, exponent: number): void {
 
 function steepen(tones: Float64Array, steepness: number): void {
   const end = Math.tanh(steepness / 2)
-  for (let i = 0; i < tones.length; i++) tones[i] = within(0.5 + Math.tanh(steepness * (tones[i]! - 0.5)) / (2 * end))
+  for (let i = 0; i < tones.length; i++) tones[i] = within((1 + Math.tanh(steepness * (tones[i]! - 0.5)) / end) / 2)
 }
 
 function flatten(tones: Float64Array, steepness: number): void {
   const end = Math.tanh(steepness / 2)
-  for (let i = 0; i < tones.length; i++) tones[i] = within(0.5 + Math.atanh((2 * tones[i]! - 1) * end) / steepness)
+  // Not steepness / 2, from which rounding may part it: both ends must come out exactly.
+  const full = Math.atanh(end)
+  for (let i = 0; i < tones.length; i++) tones[i] = within((1 + Math.atanh((2 * tones[i]! - 1) * end) / full) / 2)
 }
 
 const within = (tone: number): number => tone > 0 ? (tone < 1 ? tone : 1) : 0
