@@ -1,0 +1,42 @@
+import type { PreviewOrder, Reading, Summary } from '~/preview/engine'
+import type { PreviewAnswer, PreviewRequest } from '~/preview/messages'
+import type { TriptychState } from '~/utils/triptych'
+
+/**
+ * The page's side of the preview: canvases, a picture and an order go to a worker, what it has drawn comes back as a summary.
+ * A change of order costs the page one message; nothing is asked of the server.
+ */
+export function usePreview() {
+  const summary = shallowRef<Summary | null>(null)
+  const pictureEnds = shallowRef<[number, number]>([0, 1])
+  const reading = shallowRef<Reading | null>(null)
+  const worker = new Worker(new URL('../preview/preview.worker.ts', import.meta.url), { type: 'module' })
+  const send = (request: PreviewRequest, moved: Transferable[] = []) => worker.postMessage(request, moved)
+
+  worker.onmessage = ({ data }: MessageEvent<PreviewAnswer>) => {
+    if (data.kind === 'reading') reading.value = data.reading
+    else {
+      summary.value = data.summary
+      pictureEnds.value = data.pictureEnds
+    }
+  }
+  onScopeDispose(() => worker.terminate())
+
+  const given = new WeakSet<HTMLCanvasElement>()
+  /** A canvas can be given away only once; it belongs to the worker afterwards. */
+  function attach(state: TriptychState, canvas: unknown) {
+    if (!(canvas instanceof HTMLCanvasElement) || given.has(canvas)) return
+    given.add(canvas)
+    const offscreen = canvas.transferControlToOffscreen()
+    send({ kind: 'canvas', state, canvas: offscreen }, [offscreen])
+  }
+
+  function setSource(picture: ProxyPicture) {
+    send({ kind: 'source', ...picture }, [picture.channels])
+  }
+
+  const setOrder = (order: PreviewOrder) => send({ kind: 'order', order })
+  const read = (spot: { x: number, y: number } | null) => send({ kind: 'read', spot })
+
+  return { summary, pictureEnds, reading, attach, setSource, setOrder, read }
+}
