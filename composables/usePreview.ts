@@ -1,5 +1,5 @@
 import type { PreviewOrder, Reading, Summary } from '~/preview/engine'
-import type { PreviewAnswer, PreviewRequest } from '~/preview/messages'
+import type { PreviewAnswer, PreviewPart, PreviewRequest } from '~/preview/messages'
 import type { TriptychState } from '~/utils/triptych'
 
 /**
@@ -31,12 +31,12 @@ export function usePreview() {
     send({ kind: 'canvas', state, canvas: offscreen }, [offscreen])
   }
 
-  function setSource(picture: ProxyPicture) {
-    send({ kind: 'source', ...picture }, [picture.channels])
-  }
+  /** Gives a picture away to the worker, and shows it. */
+  const setSource = (picture: ProxyPicture, part: PreviewPart = 'whole') => send({ kind: 'source', part, ...picture }, [picture.channels])
+  const show = (part: PreviewPart) => send({ kind: 'show', part })
 
   const setOrder = (order: PreviewOrder) => send({ kind: 'order', order })
   const read = (spot: { x: number, y: number } | null) => send({ kind: 'read', spot })
 
-  return { summary, pictureEnds, reading, attach, setSource, setOrder, read }
+  return { summary, pictureEnds, reading, attach, setSource, show, setOrder, read }
 }

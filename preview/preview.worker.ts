@@ -1,9 +1,10 @@
 import type { TriptychState } from '../utils/triptych'
 import { PreviewEngine } from './engine'
-import type { PreviewAnswer, PreviewRequest } from './messages'
+import type { PreviewAnswer, PreviewPart, PreviewRequest } from './messages'
 
 /** Draws the triptych off the page's own thread. While slides come faster than pictures, only the newest is drawn. */
-const engine = new PreviewEngine()
+const engines: Record<PreviewPart, PreviewEngine> = { whole: new PreviewEngine(), detail: new PreviewEngine() }
+let shown: PreviewPart = 'whole'
 const canvases = new Map<TriptychState, OffscreenCanvas>()
 let spot: { x: number, y: number } | null = null
 let newest: Extract<PreviewRequest, { kind: 'order' }> | undefined
@@ -13,7 +14,8 @@ const answer = (message: PreviewAnswer) => postMessage(message)
 
 onmessage = ({ data }: MessageEvent<PreviewRequest>) => {
   if (data.kind === 'canvas') canvases.set(data.state, data.canvas)
-  if (data.kind === 'source') engine.setSource(new Uint16Array(data.channels), data.width, data.height)
+  if (data.kind === 'source') engines[data.part].setSource(new Uint16Array(data.channels), data.width, data.height)
+  if (data.kind === 'source' || data.kind === 'show') shown = data.part
   if (data.kind === 'order') newest = data
   if (data.kind === 'read') {
     spot = data.spot
@@ -26,15 +28,16 @@ onmessage = ({ data }: MessageEvent<PreviewRequest>) => {
 
 function drawNewest() {
   isPlanned = false
-  if (newest) engine.setOrder(newest.order)
+  if (newest) for (const engine of Object.values(engines)) engine.setOrder(newest.order)
   newest = undefined
-  if (!engine.isReady) return
-  for (const [state, canvas] of canvases) draw(state, canvas)
-  answer({ kind: 'drawn', summary: engine.summary(), pictureEnds: engine.pictureEnds() })
+  const { whole } = engines
+  if (engines[shown].isReady) for (const [state, canvas] of canvases) draw(engines[shown], state, canvas)
+  if (!whole.isReady) return
+  answer({ kind: 'drawn', summary: whole.summary(), pictureEnds: whole.pictureEnds() })
   tellReading()
 }
 
-function draw(state: TriptychState, canvas: OffscreenCanvas) {
+function draw(engine: PreviewEngine, state: TriptychState, canvas: OffscreenCanvas) {
   const { width, height } = engine
   if (canvas.width !== width || canvas.height !== height) Object.assign(canvas, { width, height })
   const image = new ImageData(width, height)
@@ -43,5 +46,6 @@ function draw(state: TriptychState, canvas: OffscreenCanvas) {
 }
 
 function tellReading() {
+  const engine = engines[shown]
   if (engine.isReady) answer({ kind: 'reading', reading: spot && engine.read(spot.x, spot.y) })
 }
