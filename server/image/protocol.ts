@@ -1,3 +1,4 @@
+import type { ResponseFit, ResponsePoint } from '#shared/calibration/response-fit'
 import type { Aim } from '#shared/schemas/curves'
 import type { Adjustments, FilmFormat } from '#shared/schemas/negatives'
 
@@ -55,4 +56,6 @@ export interface ImageCalls {
   film: { in: { path: string, target: string, order: FilmOrder, renderKey: string }, out: { bytes: number, sha256: string } }
   /** one state of the triptych as an 8-bit PNG, through the same code as film */
   forecast: { in: { path: string, target: string, order: FilmOrder, width: number, state: 'photo' | 'film' | 'print', palette: string }, out: { width: number, height: number } }
+  /** `fitResponse` of shared/calibration: too long for the process that answers requests */
+  fitResponse: { in: { points: ResponsePoint[], prints: number }, out: ResponseFit }
 }

@@ -42,9 +42,14 @@ export const combination = {
   recipe: recipe.optional(), path: path.optional(), ink: ink.optional(), readingChannel: readingChannel.optional(), mirror: z.boolean().optional(),
 }
 export const benchBody = z.strictObject({ id: newId, name, ...combination, baseExposure: baseExposureValue.optional() })
-export const benchPatch = z.strictObject({
-  name: name.optional(), ...z.object(combination).partial().shape, baseExposure: baseExposureValue.optional(), revision,
-})
+const changes = {
+  name: name.optional(), ...combination, process: process.optional(),
+  paperId: id.nullish(), sensitizerId: id.nullish(), filmId: id.nullish(), inkjetId: id.nullish(), lampId: id.nullish(),
+  baseExposure: baseExposureValue.optional(),
+}
+/** What is left out stays; null takes something off the bench. */
+export const benchPatch = z.strictObject({ ...changes, revision })
+export const benchCopy = z.strictObject({ id: newId, ...changes })
 
 const curveBrief = z.object({ id, version: z.number().int(), calibrated: z.boolean(), blackLightness: z.number(), whiteLightness: z.number() })
 export const bench = z.object({
@@ -60,7 +65,8 @@ export const bench = z.object({
 })
 export type Bench = z.infer<typeof bench>
 
-const baseExposure = z.object({ id, exposureSeconds: z.number(), exposureSecondsLow: z.number(), exposureSecondsHigh: z.number() })
+/** Seconds are null for an exposure in light units; low and high are null where it was typed in. */
+const baseExposure = z.object({ id, value: z.number(), unit: exposureUnit, exposureSeconds: z.number().nullable(), exposureSecondsLow: z.number().nullable(), exposureSecondsHigh: z.number().nullable(), createdAt: instant })
 
 const root = '/api/studios/:studio/benches' as const
 export const benchEndpoints = {
@@ -68,8 +74,8 @@ export const benchEndpoints = {
   createBench: endpoint({ method: 'POST', path: root, access: 'technician', summary: 'Set up a bench.', body: benchBody, answers: { 200: bench, 201: bench } }),
   bench: endpoint({ method: 'GET', path: `${root}/:bench`, access: 'member', summary: 'One bench.', answers: { 200: bench } }),
   changeBench: endpoint({ method: 'PATCH', path: `${root}/:bench`, access: 'technician', summary: 'Change it; a changed combination with readings is refused (`combination_fixed`) and a copy offered.', body: benchPatch, answers: { 200: bench } }),
-  copyBench: endpoint({ method: 'POST', path: `${root}/:bench/copy`, access: 'technician', summary: 'A new bench with this one’s combination, changed where the body says.', body: benchPatch.omit({ revision: true }).extend({ id: newId }), answers: { 200: bench, 201: bench } }),
+  copyBench: endpoint({ method: 'POST', path: `${root}/:bench/copy`, access: 'technician', summary: 'A new bench with this one’s combination, changed where the body says.', body: benchCopy, answers: { 200: bench, 201: bench } }),
   archiveBench: endpoint({ method: 'POST', path: `${root}/:bench/archive`, access: 'technician', summary: 'Put it away; what was made with it stays.', body: z.strictObject({ revision }), answers: { 200: bench } }),
   createStarterBench: endpoint({ method: 'POST', path: '/api/studios/:studio/starter-benches', access: 'member', summary: 'The service’s own bench for a process, with an uncalibrated starter curve.', body: z.strictObject({ process }), answers: { 200: bench, 201: bench } }),
-  listBaseExposures: endpoint({ method: 'GET', path: `${root}/:bench/base-exposures`, access: 'member', summary: 'The bench’s base exposures, newest first.', query: listQuery, answers: { 200: listOf(baseExposure.extend({ value: z.number(), unit: exposureUnit, createdAt: instant })) } }),
+  listBaseExposures: endpoint({ method: 'GET', path: `${root}/:bench/base-exposures`, access: 'member', summary: 'The bench’s base exposures, newest first.', query: listQuery, answers: { 200: listOf(baseExposure) } }),
 }

@@ -56,6 +56,13 @@ export const curve = z.object({
 export type Curve = z.infer<typeof curve>
 /** In lists the long tables are left out. */
 export const curveBrief = curve.omit({ points: true, response: true })
+export type CurveBrief = z.infer<typeof curveBrief>
+
+export const curveBody = z.strictObject({
+  id: newId,
+  readingIds: z.array(id).min(1).max(50).refine(ids => new Set(ids).size === ids.length, 'Name each reading once.'),
+  aim: aim.optional(), notes: text.optional(),
+})
 
 const bench = '/api/studios/:studio/benches/:bench' as const
 const curves = '/api/studios/:studio/curves/:curve' as const
@@ -71,7 +78,7 @@ export const curveEndpoints = {
   listCurves: endpoint({ method: 'GET', path: `${bench}/curves`, access: 'member', summary: 'Curve versions of a bench.', query: listQuery, answers: { 200: listOf(curveBrief) } }),
   createCurve: endpoint({
     method: 'POST', path: `${bench}/curves`, access: 'technician', summary: 'Fit a draft curve from readings.',
-    body: z.strictObject({ id: newId, readingIds: z.array(id).min(1).max(50), aim: aim.optional(), notes: text.optional() }), answers: { 200: curve, 201: curve },
+    body: curveBody, answers: { 200: curve, 201: curve },
   }),
   curve: endpoint({ method: 'GET', path: curves, access: 'member', summary: 'One curve with its points.', answers: { 200: curve } }),
   useCurve: endpoint({ method: 'POST', path: `${curves}/use`, access: 'technician', summary: 'Put a curve in use; the one before is retired.', answers: { 200: curve } }),

@@ -46,7 +46,7 @@ function queryParameters(query: z.ZodType | undefined): Json[] {
 }
 
 function requestBody({ body, otherBodies = {} }: Endpoint): Json {
-  const content = Object.fromEntries(Object.entries(otherBodies).map(([type, description]) => [type, { schema: { type: 'string', description } }]))
+  const content: Json = Object.fromEntries(Object.entries(otherBodies).map(([type, description]) => [type, { schema: { type: 'string', description } }]))
   if (body) content['application/json'] = { schema: jsonSchema(body, 'input') }
   return Object.keys(content).length ? { requestBody: { required: true, content } } : {}
 }

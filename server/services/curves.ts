@@ -1,0 +1,150 @@
+// Longer than most: a curve's view, its fit and its passage from draft to retired belong together.
+import { and, desc, eq, inArray, max, ne, sql } from 'drizzle-orm'
+import type { z } from 'zod'
+import { curvePoints } from '#shared/calibration/curve'
+import type { ResponseFit } from '#shared/calibration/response-fit'
+import { ComputeError } from '#shared/errors'
+import type { Curve, CurveBrief, curveBody } from '#shared/schemas/curves'
+import { db, type Queryable, type Transaction } from '../db/client'
+import { curveReadings, curves, readings } from '../db/schema'
+import { hasRole, type StudioAccess } from './access'
+import { recordEvent } from './audit'
+import { findBench, lockBench } from './benches'
+import { bodyHashOf, createOnce, idFor } from './creation'
+import { hint } from './hints'
+import { imageChild } from './image-child'
+import { keyset, toPage, type Page } from './paging'
+import { requireFound } from './revisions'
+
+export type CurveRow = typeof curves.$inferSelect
+type Body = z.infer<typeof curveBody>
+
+export async function listCurves(studio: StudioAccess, benchId: string, page: Page) {
+  requireFound(await findBench(db(), studio.id, benchId))
+  const { after, order, take } = keyset(curves.id, page)
+  const rows = await db().select({
+    ...briefColumns, blackLightness: sql<number>`(${curves.response}->>0)::float8`, whiteLightness: sql<number>`(${curves.response}->>1024)::float8`,
+  }).from(curves).where(and(eq(curves.studioId, studio.id), eq(curves.benchId, benchId), after)).orderBy(order).limit(take)
+  const readingsOf = await readingIdsOf(db(), studio.id, rows.map(row => row.id))
+  return toPage(rows, page, row => brief(row, readingsOf.get(row.id)))
+}
+
+export async function curveOf(studio: StudioAccess, id: string): Promise<Curve> {
+  return await view(db(), requireFound(await findCurve(db(), studio.id, id)))
+}
+
+export async function findCurve(on: Queryable, studioId: string, id: string): Promise<CurveRow | undefined> {
+  return (await on.select().from(curves).where(and(eq(curves.studioId, studioId), eq(curves.id, id))))[0]
+}
+
+/**
+ * The curve a negative is made with: the one named, else the bench's curve in use. Technicians and owners may try a draft;
+ * members take curves in use only (403). Another bench's curve is not found; none in use is `no_curve`.
+ */
+export async function requireCurveFor(on: Queryable, studio: StudioAccess, benchId: string, curveId?: string): Promise<CurveRow> {
+  const [curve] = await on.select().from(curves).where(and(eq(curves.studioId, studio.id), eq(curves.benchId, benchId), curveId ? eq(curves.id, curveId) : eq(curves.state, 'in-use')))
+  if (!curve) throw curveId ? new ComputeError('not_found', 'This bench has no such curve.') : new ComputeError('no_curve', 'This bench has no curve in use yet. Read a wedge and put a curve in use first.')
+  if (curve.state !== 'in-use' && !hasRole(studio.role, 'technician')) throw new ComputeError('role_too_low', 'This curve is not in use. Members print with curves in use; ask a technician of the studio.')
+  return curve
+}
+
+/** Fits a draft from readings of this bench. The fit runs in a child; the row is written after it, in one transaction. */
+export async function createCurve(studio: StudioAccess, benchId: string, body: Body): Promise<{ created: boolean, item: Curve }> {
+  const bench = requireFound(await findBench(db(), studio.id, benchId))
+  if (bench.archivedAt) throw new ComputeError('wrong_state', 'This bench has been put away. Make a copy of it to go on.')
+  const bodyHash = bodyHashOf({ ...body, benchId })
+  const stored = body.id && await findCurve(db(), studio.id, body.id)
+  const fit = stored ? undefined : await fitReadings(studio.id, benchId, body.readingIds)
+  return await db().transaction(async (tx) => {
+    const { created, row } = await createOnce(bodyHash, async () => fit && await insertDraft(tx, studio, benchId, body, bodyHash, fit), async () => body.id ? await findCurve(tx, studio.id, body.id) : undefined)
+    return { created, item: await view(tx, row) }
+  })
+}
+
+async function fitReadings(studioId: string, benchId: string, readingIds: string[]): Promise<ResponseFit> {
+  const rows = await db().select({ id: readings.id, state: readings.state, patches: readings.patches }).from(readings)
+    .where(and(eq(readings.studioId, studioId), eq(readings.benchId, benchId), inArray(readings.id, readingIds)))
+  const issues = readingIds.flatMap((id, i) => rows.some(row => row.id === id && row.state === 'ready') ? [] : [{ path: `readingIds.${i}`, message: 'This bench has no such finished reading.' }])
+  if (issues.length) throw new ComputeError('invalid_input', 'A curve is fitted from readings of its own bench.', issues)
+  const points = rows.flatMap(row => row.patches).flatMap(({ level, lightness, used }) => used && lightness !== null ? [{ level, lightness }] : [])
+  return await imageChild().call('fitResponse', { points, prints: rows.length })
+}
+
+async function insertDraft(tx: Transaction, studio: StudioAccess, benchId: string, body: Body, bodyHash: string, fit: ResponseFit): Promise<CurveRow | undefined> {
+  await lockBench(tx, studio.id, benchId)
+  const [latest] = await tx.select({ version: max(curves.version) }).from(curves).where(and(eq(curves.studioId, studio.id), eq(curves.benchId, benchId)))
+  const [row] = await tx.insert(curves).values({
+    studioId: studio.id, id: idFor(body), benchId, version: (latest?.version ?? 0) + 1, state: 'draft', aim: body.aim ?? 'even-lightness', calibrated: true,
+    response: fit.response, responseLow: fit.low, responseHigh: fit.high, expectedError: fit.expectedError, warnings: fit.warnings,
+    notes: body.notes, bodyHash, createdBy: studio.personId,
+  }).onConflictDoNothing({ target: [curves.studioId, curves.id] }).returning()
+  if (!row) return undefined
+  await tx.insert(curveReadings).values(body.readingIds.map(readingId => ({ studioId: studio.id, benchId, curveId: row.id, readingId })))
+  await tell(tx, studio, row, 'created')
+  return row
+}
+
+/** Puts a curve in use and retires the one before. All changes of a bench's curves wait for one another at its row. */
+export async function useCurve(studio: StudioAccess, id: string): Promise<Curve> {
+  return await db().transaction(async (tx) => {
+    const curve = await lockCurve(tx, studio, id)
+    if (curve.state === 'in-use') return await view(tx, curve)
+    const before = await tx.update(curves).set({ state: 'retired' })
+      .where(and(eq(curves.studioId, studio.id), eq(curves.benchId, curve.benchId), eq(curves.state, 'in-use'), ne(curves.id, id))).returning()
+    for (const row of before) await tell(tx, studio, row, 'retired')
+    return await view(tx, await setState(tx, studio, id, 'in-use'))
+  })
+}
+
+export async function retireCurve(studio: StudioAccess, id: string): Promise<Curve> {
+  return await db().transaction(async (tx) => {
+    const curve = await lockCurve(tx, studio, id)
+    if (!curve.calibrated) throw new ComputeError('wrong_state', 'A starter curve stays in use, so that everybody can begin. Set up a bench of your own for a better one.')
+    return await view(tx, curve.state === 'retired' ? curve : await setState(tx, studio, id, 'retired'))
+  })
+}
+
+async function lockCurve(tx: Transaction, studio: StudioAccess, id: string): Promise<CurveRow> {
+  const { benchId } = requireFound(await findCurve(tx, studio.id, id))
+  await lockBench(tx, studio.id, benchId)
+  return requireFound(await findCurve(tx, studio.id, id))
+}
+
+async function setState(tx: Transaction, studio: StudioAccess, id: string, state: 'in-use' | 'retired'): Promise<CurveRow> {
+  const [row] = await tx.update(curves).set({ state, ...(state === 'in-use' ? { inUseSince: sql`now()` } : {}) })
+    .where(and(eq(curves.studioId, studio.id), eq(curves.id, id))).returning()
+  await tell(tx, studio, row!, state === 'in-use' ? 'used' : 'retired')
+  return row!
+}
+
+async function tell(tx: Transaction, studio: StudioAccess, { id, benchId, version }: CurveRow, verb: string): Promise<void> {
+  await recordEvent(tx, { studioId: studio.id, userId: studio.personId, kind: `curves.${verb}`, recordId: id, details: { benchId, version } })
+  await hint(tx, { studioId: studio.id, topic: 'curves', id })
+  await hint(tx, { studioId: studio.id, topic: 'benches', id: benchId })
+}
+
+async function readingIdsOf(on: Queryable, studioId: string, curveIds: string[]): Promise<Map<string, string[]>> {
+  const rows = await on.select({ curveId: curveReadings.curveId, readingId: curveReadings.readingId }).from(curveReadings)
+    .where(and(eq(curveReadings.studioId, studioId), inArray(curveReadings.curveId, curveIds))).orderBy(desc(curveReadings.readingId))
+  const found = new Map<string, string[]>()
+  for (const { curveId, readingId } of rows) found.set(curveId, [...found.get(curveId) ?? [], readingId])
+  return found
+}
+
+const briefColumns = {
+  id: curves.id, benchId: curves.benchId, version: curves.version, state: curves.state, aim: curves.aim, calibrated: curves.calibrated, assumptions: curves.assumptions,
+  expectedError: curves.expectedError, warnings: curves.warnings, notes: curves.notes, createdAt: curves.createdAt, inUseSince: curves.inUseSince,
+}
+type BriefRow = Pick<CurveRow, keyof typeof briefColumns> & { blackLightness: number, whiteLightness: number }
+
+const brief = ({ createdAt, inUseSince, ...row }: BriefRow, readingIds: string[] = []): CurveBrief =>
+  ({ ...row, readingIds, createdAt: createdAt.toISOString(), inUseSince: inUseSince?.toISOString() ?? null })
+
+async function view(on: Queryable, row: CurveRow): Promise<Curve> {
+  const { studioId, bodyHash: _, createdBy: __, response, responseLow, responseHigh, ...fields } = row
+  const readingIds = (await readingIdsOf(on, studioId, [row.id])).get(row.id)
+  return {
+    ...brief({ ...fields, blackLightness: response[0]!, whiteLightness: response.at(-1)! }, readingIds),
+    points: curvePoints(response, responseLow, responseHigh, row.aim), response,
+  }
+}
