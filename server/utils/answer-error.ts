@@ -19,6 +19,10 @@ export function errorAnswerOf(error: unknown): ErrorAnswer {
 export function answerError(event: H3Event, error: unknown): ErrorAnswer {
   const answer = errorAnswerOf(error)
   if (answer.statusCode === 500) console.error(error)
+  if (event.node.res.headersSent) {
+    event.node.res.destroy() // half an answer must not look like a whole one
+    return answer
+  }
   if (answer.statusCode === 429) setResponseHeader(event, 'Retry-After', 60)
   setResponseStatus(event, answer.statusCode, answer.statusMessage)
   setResponseHeader(event, 'Cache-Control', 'no-store')

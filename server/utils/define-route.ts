@@ -40,10 +40,10 @@ export function defineRoute<const E extends Endpoint>(row: E, handle: (context: 
   return defineEventHandler<EventHandlerRequest, Promise<unknown>>(async (event) => {
     try {
       refuseForeignOrigin(event)
+      setResponseHeader(event, 'Cache-Control', 'no-store') // until the route says otherwise
       const callers = await admit(event, row)
       const query = row.query?.parse(getQuery(event))
       const answer = await handle({ event, ...callers, query, ...await readBody(event, row), idParam: idParamOf(event) } as RouteContext<E>)
-      if (row.access !== 'public' && !getResponseHeader(event, 'Cache-Control')) setResponseHeader(event, 'Cache-Control', 'no-store')
       if (readSettings().CHECK_ANSWERS) checkAnswer(row, getResponseStatus(event), answer)
       return answer
     }

@@ -36,7 +36,7 @@ export async function sendStoredFile(event: H3Event, file: SentFile): Promise<vo
   const { start, end } = range === 'whole' ? { start: 0, end: file.bytes - 1 } : range
   if (range !== 'whole') setResponseHeader(event, 'content-range', `bytes ${start}-${end}/${file.bytes}`)
   setResponseHeader(event, 'content-length', end - start + 1)
-  if (event.method === 'HEAD') return endWith(event, range === 'whole' ? 200 : 206)
+  if (event.context.headOnly) return endWith(event, range === 'whole' ? 200 : 206)
   setResponseStatus(event, range === 'whole' ? 200 : 206)
   // A reader who goes away is no error of ours.
   await pipeline(storage().read(file.key, { start, end }), res).catch(() => res.destroy())
