@@ -1,16 +1,17 @@
-import { createHash } from 'node:crypto'
-import { existsSync, readFileSync, writeFileSync } from 'node:fs'
+import { existsSync, readFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { root } from './paths.mjs'
-import { run, say } from './run.mjs'
+import { runAside, say } from './run.mjs'
 
-const marker = join(root, 'node_modules/.installed-from')
+const packagesOf = path => existsSync(path) ? JSON.parse(readFileSync(path, 'utf8')).packages : {}
 
-/** Installs npm packages when the lock file is another than the one they were installed from. */
-export function ensureDependencies() {
-  const lock = createHash('sha256').update(readFileSync(join(root, 'package-lock.json'))).digest('hex')
-  if (existsSync(marker) && readFileSync(marker, 'utf8') === lock) return
+/** Installs npm packages unless what npm says it installed is what the lock file asks for. */
+export async function ensureDependencies() {
+  const wanted = packagesOf(join(root, 'package-lock.json'))
+  const installed = packagesOf(join(root, 'node_modules/.package-lock.json'))
+  const differs = Object.entries(wanted).some(([path, { version, optional }]) =>
+    path !== '' && installed[path]?.version !== version && !(optional && !installed[path]))
+  if (!differs) return
   say('Installing npm packages …')
-  run('npm', ['ci', '--no-audit', '--no-fund'], { cwd: root })
-  writeFileSync(marker, lock)
+  await runAside('npm', ['ci', '--no-audit', '--no-fund'], { cwd: root })
 }

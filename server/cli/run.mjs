@@ -16,13 +16,22 @@ export function capture(program, args, options = {}) {
   return { ok: ended.status === 0, text: ended.stdout ?? '', problem: (ended.stderr ?? '') + (ended.error?.message ?? '') }
 }
 
+const aside = new Set()
+
 /** Like `run`, without blocking this process. */
 export function runAside(program, args, options = {}) {
   return new Promise((resolve, reject) => {
     const child = spawn(program, args, { stdio: 'inherit', ...options })
+    aside.add(child)
+    child.on('close', () => aside.delete(child))
     child.on('error', error => reject(new Stop(`${program} did not start: ${error.message}`)))
     child.on('exit', (code, signal) => code === 0 ? resolve() : reject(new Stop(`${program} ${args[0] ?? ''} ended with ${code ?? signal}.`)))
   })
+}
+
+/** Ends what still runs aside. */
+export function endAside() {
+  for (const child of aside) child.kill('SIGTERM')
 }
 
 export function say(line) {

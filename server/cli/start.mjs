@@ -8,7 +8,7 @@ import { ensureDependencies } from './dependencies.mjs'
 import { readInstallation, serviceEnvironment } from './installation.mjs'
 import { takeLock } from './lock.mjs'
 import { builtPrograms, inData, root, webProgram } from './paths.mjs'
-import { main, say, Stop } from './run.mjs'
+import { endAside, main, say, Stop } from './run.mjs'
 import { keepRunning } from './supervisor.mjs'
 
 // `npm start` and `npm run dev`: everything from an empty checkout to a service that answers.
@@ -22,7 +22,7 @@ let ending
 main(async () => {
   process.on('SIGINT', () => end(0))
   process.on('SIGTERM', () => end(0))
-  ensureDependencies()
+  await ensureDependencies()
   const lock = await takeLock(inData('running.json'))
   undo.push(() => lock.release())
   try {
@@ -84,6 +84,7 @@ function end(code) {
   if (ending) return process.exit(1)
   ending = (async () => {
     say('Stopping …')
+    endAside()
     for (const step of undo.reverse()) await step()
     process.exit(code)
   })()
