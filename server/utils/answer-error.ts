@@ -1,5 +1,6 @@
 import { H3Error, setResponseHeader, setResponseStatus, type H3Event } from 'h3'
 import { z } from 'zod'
+import { log } from '../log'
 import { ComputeError, errorCodes, type ErrorCode, type Issue } from '#shared/errors'
 
 export interface ErrorAnswer {
@@ -18,7 +19,7 @@ export function errorAnswerOf(error: unknown): ErrorAnswer {
 
 export function answerError(event: H3Event, error: unknown): ErrorAnswer {
   const answer = errorAnswerOf(error)
-  if (answer.statusCode === 500) console.error(error)
+  if (answer.statusCode === 500) log('error', 'request.error', { requestId: event.context.requestId, error })
   if (event.node.res.headersSent) {
     event.node.res.destroy() // half an answer must not look like a whole one
     return answer

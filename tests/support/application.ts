@@ -1,5 +1,5 @@
 import { type ChildProcess, spawn } from 'node:child_process'
-import { closeSync, existsSync, mkdirSync, openSync, readFileSync } from 'node:fs'
+import { closeSync, mkdirSync, openSync, readFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { setTimeout as sleep } from 'node:timers/promises'
 import { webProgram } from '../../server/cli/paths.mjs'
@@ -52,9 +52,9 @@ export async function startWeb(settings: Settings) {
 /** Web and a worker. */
 export async function startApplication(settings: Settings) {
   const web = await startWeb(settings)
-  const worker = existsSync(join(settings.programs, 'worker.mjs')) ? startWorker(settings) : undefined
-  const children = [web, worker].flatMap(process => process?.child ?? [])
-  return { ...settings, address: web.address, children, stop: () => Promise.all([web.stop(), worker?.stop()]) }
+  const worker = startWorker(settings)
+  const children = [web.child, worker.child]
+  return { ...settings, address: web.address, children, stop: () => Promise.all([web.stop(), worker.stop()]) }
 }
 
 /** Asks a process to end and waits until it has; one that doesn't within 20 s is killed and makes the test fail. */
