@@ -1,14 +1,18 @@
 import { createHash } from 'node:crypto'
-import { existsSync, readdirSync, readFileSync, writeFileSync } from 'node:fs'
+import { closeSync, existsSync, mkdirSync, openSync, readdirSync, readFileSync, writeFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { bundlePrograms } from './bundles.mjs'
-import { builtPrograms, root } from './paths.mjs'
-import { runAside, say } from './run.mjs'
+import { builtPrograms, inData, root } from './paths.mjs'
+import { runAside, say, Stop } from './run.mjs'
 
 const sources = [
   'app.vue', 'error.vue', 'nuxt.config.ts', 'tailwind.config.ts', 'package-lock.json',
   'assets', 'components', 'composables', 'layouts', 'middleware', 'pages', 'plugins', 'public', 'server', 'shared', 'stores',
 ]
+const logPath = () => {
+  mkdirSync(inData('logs'), { recursive: true })
+  return inData('logs', 'build.log')
+}
 const marker = join(builtPrograms, 'built-from')
 
 /** One hash over the names and contents of everything that goes into the build. */
@@ -32,8 +36,13 @@ export function hashOfSources() {
 export async function ensureBuilt() {
   const hash = hashOfSources()
   if (existsSync(marker) && readFileSync(marker, 'utf8') === hash) return hash
-  say('Building …')
-  await runAside(process.execPath, [join(root, 'node_modules/nuxt/bin/nuxt.mjs'), 'build'], { cwd: root, env: { ...process.env, NODE_ENV: 'production', NUXT_TELEMETRY_DISABLED: '1' } })
+  say('Building, which takes a minute or two …')
+  const log = openSync(logPath(), 'w')
+  await runAside(process.execPath, [join(root, 'node_modules/nuxt/bin/nuxt.mjs'), 'build'], { cwd: root, env: { ...process.env, NODE_ENV: 'production', NUXT_TELEMETRY_DISABLED: '1' }, stdio: ['ignore', log, log] })
+    .catch((problem) => {
+      throw new Stop(`${readFileSync(logPath(), 'utf8').slice(-3000)}\n${problem.message}`)
+    })
+    .finally(() => closeSync(log))
   await bundlePrograms(builtPrograms)
   writeFileSync(marker, hash)
   return hash
