@@ -9,13 +9,13 @@ const hidden = /[\p{Cc}\p{Cf}\p{Zl}\p{Zp}\p{Co}\p{Cn}]/gu
 /** A name from a file name: without folders, ending and hidden characters, at most as long as the table takes. */
 export function nameFromFileName(fileName: string, fallback = 'Photo'): string {
   const last = fileName.split(/[/\\]/).at(-1) ?? ''
-  const clean = last.normalize('NFC').replace(hidden, '').replace(/\s+/g, ' ').trim().replace(pictureEnding, '').trim()
+  const clean = last.normalize('NFC').replace(/\s+/g, ' ').replace(hidden, '').trim().replace(pictureEnding, '').trim()
   return bounded(clean) || fallback
 }
 
 /** As a name on somebody's disk: no character that a file system or a shell takes amiss. */
 export function fileNameFrom(name: string, ending: string): string {
-  const safe = name.replace(hidden, '').replace(/[<>:"/\\|?*]/g, '-').replace(/\s+/g, ' ').replace(/^[.\s]+|[.\s]+$/g, '')
+  const safe = name.replace(/\s+/g, ' ').replace(hidden, '').replace(/[<>:"/\\|?*]/g, '-').replace(/^[.\s]+|[.\s]+$/g, '')
   return `${bounded(safe) || 'file'}.${ending}`
 }
 

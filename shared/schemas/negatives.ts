@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { arePointsApart, leastPointDistance } from '../tone/adjustments'
 import { leastMixLuminance, mixLuminance } from '../tone/mix'
 import { process } from './benches'
 import { aim, warning, workState } from './curves'
@@ -19,7 +20,7 @@ export const adjustments = z.strictObject({
   whitePoint: z.number().min(0.1).max(1).default(1),
   midtone: z.number().min(-1).max(1).default(0),
   contrast: z.number().min(-1).max(1).default(0),
-}).refine(a => a.whitePoint - a.blackPoint >= 0.05, { message: 'The white point must lie at least 0.05 above the black point.', path: ['whitePoint'] })
+}).refine(arePointsApart, { message: `The white point must lie at least ${leastPointDistance} above the black point.`, path: ['whitePoint'] })
 export type Adjustments = z.infer<typeof adjustments>
 
 export const margin = z.strictObject({ mm: z.number().min(0).max(limits.marginMaxMm), kind: z.enum(['clear', 'opaque']) })

@@ -1,5 +1,6 @@
 import { ComputeError } from '../errors'
 import { requireNumber } from './domain'
+import { greatestCode } from './working-space'
 
 /** What changes the tones after the mix; the formulas are `adjustTone`'s. */
 export interface ToneAdjustments {
@@ -17,6 +18,9 @@ export const neutralAdjustments: Readonly<ToneAdjustments> = { blackPoint: 0, wh
 
 /** The least distance of white point and black point. */
 export const leastPointDistance = 0.05
+/** Whether the white point lies far enough above the black point; 0.95 and 0.9 do, whatever their last bit. */
+export const arePointsApart = ({ blackPoint, whitePoint }: Pick<ToneAdjustments, 'blackPoint' | 'whitePoint'>): boolean =>
+  whitePoint - blackPoint >= leastPointDistance - 1e-9
 /** Steepness of the sigmoid at contrast ±1. */
 const fullContrast = 4
 /** Contrast below this is neutral: the sigmoid's own rounding would exceed its effect. */
@@ -28,31 +32,33 @@ const leastContrast = 1e-6
  * 1. points: t₁ = (t − black) / (white − black), clipped to 0 … 1;
  * 2. middle: t₂ = t₁^(2^−midtone), which keeps 0 and 1;
  * 3. contrast, with a = 4·|contrast|: t₃ = ½ + ½·tanh(a(t₂ − ½)) / tanh(a/2) where positive, and that function's inverse,
- *    t₃ = ½ + artanh((2t₂ − 1)·tanh(a/2)) / a, where negative; both keep 0, ½ and 1.
+ *    t₃ = ½ + artanh((2t₂ − 1)·tanh(a/2)) / a, where negative; both keep 0, ½ and 1. Below |contrast| 10⁻⁶ it is left out.
  *
  * @throws ComputeError `invalid_input` for a tone or a setting outside its range.
  */
 export function adjustTone(tone: number, adjustments: ToneAdjustments): number {
-  return toneAdjuster(adjustments)(requireNumber(tone, 'Tone', 0, 1))
+  return adjustAll(Float64Array.of(requireNumber(tone, 'Tone', 0, 1)), adjustments)[0]!
 }
 
 /**
- * `adjustTone` with the settings checked and their constants made once; for whole tables.
- * The function given back takes tones 0 … 1 and does not check them.
+ * `adjustTone` of the tone of each of the 65 536 codes of the tone plane, tone = code / 65535.
  * @throws ComputeError `invalid_input` for a setting outside its range.
  */
-export function toneAdjuster(adjustments: ToneAdjustments): (tone: number) => number {
+export function adjustedTones(adjustments: ToneAdjustments): Float64Array {
+  const tones = new Float64Array(greatestCode + 1)
+  for (let code = 0; code <= greatestCode; code++) tones[code] = code / greatestCode
+  return adjustAll(tones, adjustments)
+}
+
+/** The three steps on all tones, in place; a neutral step is left out, so that it changes no bit. */
+function adjustAll(tones: Float64Array, adjustments: ToneAdjustments): Float64Array {
   requireAdjustments(adjustments)
   const { blackPoint, whitePoint, midtone, contrast } = adjustments
-  const distance = whitePoint - blackPoint
-  const exponent = 2 ** -midtone
-  const bend = contrastCurve(contrast)
-  return (tone) => {
-    const stretched = (tone - blackPoint) / distance
-    if (stretched <= 0) return 0
-    if (stretched >= 1) return 1
-    return bend(exponent === 1 ? stretched : stretched ** exponent)
-  }
+  if (blackPoint !== 0 || whitePoint !== 1) stretch(tones, blackPoint, whitePoint)
+  if (midtone !== 0) bend(tones, 2 ** -midtone)
+  if (contrast > leastContrast) steepen(tones, fullContrast * contrast)
+  if (contrast < -leastContrast) flatten(tones, -fullContrast * contrast)
+  return tones
 }
 
 /** @throws ComputeError `invalid_input` for a setting outside its range. */
@@ -61,16 +67,28 @@ function requireAdjustments({ blackPoint, whitePoint, midtone, contrast }: ToneA
   requireNumber(whitePoint, 'The white point', 0.1, 1)
   requireNumber(midtone, 'The middle tones', -1, 1)
   requireNumber(contrast, 'Contrast', -1, 1)
-  if (whitePoint - blackPoint < leastPointDistance - Number.EPSILON)
+  if (!arePointsApart({ blackPoint, whitePoint }))
     throw new ComputeError('invalid_input', `The white point must lie at least ${leastPointDistance} above the black point.`)
 }
 
-function contrastCurve(contrast: number): (tone: number) => number {
-  const steepness = fullContrast * Math.abs(contrast)
-  if (steepness < leastContrast) return tone => tone
-  const end = Math.tanh(steepness / 2)
-  const curve = contrast > 0
-    ? (tone: number) => 0.5 + Math.tanh(steepness * (tone - 0.5)) / (2 * end)
-    : (tone: number) => 0.5 + Math.atanh((2 * tone - 1) * end) / steepness
-  return tone => Math.min(1, Math.max(0, curve(tone)))
+function stretch(tones: Float64Array, black: number, white: number): void {
+  for (let i = 0; i < tones.length; i++) tones[i] = within((tones[i]! - black) / (white - black))
 }
+
+function bend(tones: Float64Array, exponent: number): void {
+  for (let i = 0; i < tones.length; i++) tones[i] = tones[i]! ** exponent
+}
+
+function steepen(tones: Float64Array, steepness: number): void {
+  const end = Math.tanh(steepness / 2)
+  for (let i = 0; i < tones.length; i++) tones[i] = within((1 + Math.tanh(steepness * (tones[i]! - 0.5)) / end) / 2)
+}
+
+function flatten(tones: Float64Array, steepness: number): void {
+  const end = Math.tanh(steepness / 2)
+  // Not steepness / 2, from which rounding may part it: both ends must come out exactly.
+  const full = Math.atanh(end)
+  for (let i = 0; i < tones.length; i++) tones[i] = within((1 + Math.atanh((2 * tones[i]! - 1) * end) / full) / 2)
+}
+
+const within = (tone: number): number => tone > 0 ? (tone < 1 ? tone : 1) : 0

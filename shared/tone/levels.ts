@@ -1,11 +1,11 @@
 import type { Aim } from '../schemas/curves'
 import { ComputeError } from '../errors'
 import type { ToneAdjustments } from './adjustments'
-import { toneAdjuster } from './adjustments'
+import { adjustedTones } from './adjustments'
 import { aimCurve } from './aims'
 import { requireNumber } from './domain'
 import type { Response } from './response'
-import { positionOf, requireResponse, responsePoints, valueAt } from './response'
+import { interpolateAll, positionOf, requireResponse, responsePoints } from './response'
 import { greatestCode } from './working-space'
 
 /** What decides a negative's ink levels, tone by tone. */
@@ -40,18 +40,16 @@ export function curveLevels(response: Response, aim: Aim): Float64Array {
  * @throws ComputeError for a setting out of range or a response that is not one.
  */
 export function buildLevelTable({ adjustments, aim, response }: LevelSettings): Float64Array {
-  const adjust = toneAdjuster(adjustments)
-  const curve = curveLevels(response, aim)
-  return tableByCode(code => valueAt(curve, adjust(code / greatestCode)))
+  return interpolateAll(curveLevels(response, aim), adjustedTones(adjustments))
 }
 
 /**
  * Forecast print lightness L* for each of the 65 536 codes of the tone plane: the response at the level that the film gets.
+ * `levels` spares making `buildLevelTable(settings)` twice.
  * @throws ComputeError as `buildLevelTable`.
  */
-export function buildForecastTable(settings: LevelSettings): Float64Array {
-  const levels = buildLevelTable(settings)
-  return tableByCode(code => valueAt(settings.response, levels[code]!))
+export function buildForecastTable(settings: LevelSettings, levels = buildLevelTable(settings)): Float64Array {
+  return interpolateAll(requireResponse(settings.response), levels)
 }
 
 /**
@@ -71,10 +69,4 @@ export function inkChannels(color: string): [number, number, number] {
   const parts = /^#([0-9a-f]{2})([0-9a-f]{2})([0-9a-f]{2})$/i.exec(color)
   if (!parts) throw new ComputeError('invalid_input', 'Write the ink colour as #rrggbb.')
   return [Number.parseInt(parts[1]!, 16), Number.parseInt(parts[2]!, 16), Number.parseInt(parts[3]!, 16)]
-}
-
-function tableByCode(value: (code: number) => number): Float64Array {
-  const table = new Float64Array(greatestCode + 1)
-  for (let code = 0; code <= greatestCode; code++) table[code] = value(code)
-  return table
 }

@@ -26,7 +26,24 @@ export function valueAt(values: ArrayLike<number>, position: number): number {
   const last = values.length - 1
   const place = Math.min(1, Math.max(0, position)) * last
   const below = Math.min(last - 1, Math.floor(place))
-  return lerp(values[below]!, values[below + 1]!, place - below)
+  return place === last ? values[last]! : values[below]! + (values[below + 1]! - values[below]!) * (place - below)
+}
+
+/** `valueAt` of many positions 0 … 1, which are not checked; for whole tables. */
+export function interpolateAll(values: ArrayLike<number>, positions: ArrayLike<number>): Float64Array {
+  const last = values.length - 1
+  // One step beyond the end, level with it, so that the last position needs no case of its own.
+  const padded = new Float64Array(values.length + 1)
+  padded.set(values)
+  padded[last + 1] = values[last]!
+  const found = new Float64Array(positions.length)
+  for (let i = 0; i < found.length; i++) {
+    const place = positions[i]! * last
+    const below = place | 0
+    const low = padded[below]!
+    found[i] = low + (padded[below + 1]! - low) * (place - below)
+  }
+  return found
 }
 
 /**
@@ -45,6 +62,3 @@ export function positionOf(values: ArrayLike<number>, value: number): number {
   }
   return (below + (value - values[below]!) / (values[above]! - values[below]!)) / last
 }
-
-/** Linear interpolation that never leaves the two values. */
-const lerp = (from: number, to: number, share: number): number => share >= 1 ? to : from + (to - from) * share

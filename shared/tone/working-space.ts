@@ -7,7 +7,8 @@ import { invert } from './matrix'
 
 /**
  * The working space: primaries of ROMM RGB (ISO 22028-2:2013, table 1), white D50, every channel coded as the L* of its
- * linear value. It holds all of Display P3, Adobe RGB and Rec. 2020, so nothing is clipped before the black-and-white mix.
+ * linear value. It holds Adobe RGB whole; the blue channel of pure reds and cyans of Display P3 and Rec. 2020 leaves it by 0.003
+ * at most, which is less than 10⁻⁶ of luminance. So nothing that can be seen is clipped before the black-and-white mix.
  */
 export const workingPrimaries: Primaries = [[0.7347, 0.2653], [0.1596, 0.8404], [0.0366, 0.0001]]
 

@@ -1,0 +1,19 @@
+import { describe, expect, it, vi } from 'vitest'
+import { jobHandlers, requireHandlers } from '../../../server/jobs/handlers'
+import { jobNames } from '../../../server/jobs/names'
+
+describe('boot check of jobs', () => {
+  it('passes with one handler for each name', () => expect(() => requireHandlers()).not.toThrow())
+
+  it('refuses a job without a handler, a handler without a job, and a name twice', () => {
+    expect(() => requireHandlers(jobHandlers, [...jobNames, 'sort-films'])).toThrow('No handler for the job sort-films')
+    expect(() => requireHandlers({ ...jobHandlers, 'sort-films': vi.fn() })).toThrow('A handler for sort-films, which is no job')
+    expect(() => requireHandlers(jobHandlers, [...jobNames, ...jobNames])).toThrow('named twice')
+  })
+
+  it('lets a render job wake the worker', () => {
+    const wake = vi.fn()
+    void jobHandlers['make-render']({ studioId: 's', renderId: 'r' }, { wake })
+    expect(wake).toHaveBeenCalledOnce()
+  })
+})
