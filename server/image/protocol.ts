@@ -47,6 +47,7 @@ export interface FilmOrder {
 
 /** Calls to an image child; paths are absolute. Each answers or fails with a ComputeError's code. */
 export interface ImageCalls {
+  /** header, budget, and one reading of all the data: what is cut off or broken is refused here */
   probe: { in: { path: string }, out: PictureFacts }
   /** upright black-and-white JPEG, `longerSide` pixels at most */
   thumbnail: { in: { path: string, target: string, longerSide: number }, out: { width: number, height: number } }

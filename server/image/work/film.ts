@@ -1,0 +1,49 @@
+import { rmSync } from 'node:fs'
+import { mixWeights } from '#shared/tone/mix'
+import { decodePicture, lightPlane, type LightPlane } from '../decode'
+import { composeFilm, filmInk } from '../film/compose'
+import { FilmFile } from '../film/film-file'
+import { layOutFilm } from '../film/layout'
+import { layOutMarks } from '../film/marks'
+import { writePdf } from '../film/pdf'
+import { writePng } from '../film/png'
+import { writeTiff } from '../film/tiff'
+import type { FilmOrder, ImageCalls } from '../protocol'
+import { placePixels } from '../sample/placement'
+import { toneRows } from '../sample/tone-rows'
+
+/** Share of a film's time that passes before its first row, for progress: decoding. */
+const decodingShare = 0.25
+
+interface Source { plane: LightPlane, orientation: number }
+
+/** Decodes and keeps only what the film needs. */
+async function openSource(path: string, order: FilmOrder): Promise<Source> {
+  const picture = await decodePicture(path)
+  return { plane: lightPlane(picture, mixWeights(order.tone.adjustments.mix)), orientation: picture.header.orientation }
+}
+
+export async function makeFilm({ path, target, order, renderKey }: ImageCalls['film']['in'], onProgress: (fraction: number) => void): Promise<ImageCalls['film']['out']> {
+  const ink = filmInk(order)
+  const { plane, orientation } = await openSource(path, order)
+  onProgress(decodingShare)
+  const source = { width: plane.width, height: plane.height, orientation }
+  const layout = layOutFilm(source, order)
+  const marks = await layOutMarks(order, layout)
+  const tones = toneRows(plane, placePixels(source, order.geometry, layout.picture.width, layout.picture.height))
+  const rows = composeFilm(tones, ink, layout, marks, order)
+  const spec = { width: layout.width, height: layout.height, channels: ink.channels, pixelsPerInch: order.pixelsPerInch }
+  const onRows = (done: number) => onProgress(decodingShare + (1 - decodingShare) * done / layout.height)
+  const file = new FilmFile(target)
+  try {
+    if (order.format === 'tiff') await writeTiff(file, rows, spec, onRows)
+    else if (order.format === 'png') await writePng(file, rows, spec, onRows)
+    else await writePdf(file, rows, { ...spec, pageMm: order.filmMm, title: order.marks.labelText || 'Film', renderKey }, onRows)
+    file.close()
+    return { bytes: file.position, sha256: FilmFile.sha256(target) }
+  }
+  catch (error) {
+    rmSync(target, { force: true })
+    throw error
+  }
+}
