@@ -2,6 +2,7 @@ import { ComputeError } from '#shared/errors'
 import type { ImageReply } from './pool'
 import type { ImageCalls } from './protocol'
 import { makeFilm } from './work/film'
+import { fitCurve } from './work/fit'
 import { makeForecast } from './work/forecast'
 import { probePicture } from './work/probe'
 import { makeProxy } from './work/proxy'
@@ -9,7 +10,7 @@ import { makeThumbnail } from './work/thumbnail'
 
 type Work = { [K in keyof ImageCalls]: (input: ImageCalls[K]['in'], onProgress: (fraction: number) => void) => Promise<ImageCalls[K]['out']> }
 
-const work: Work = { probe: probePicture, thumbnail: makeThumbnail, proxy: makeProxy, film: makeFilm, forecast: makeForecast }
+const work: Work = { probe: probePicture, thumbnail: makeThumbnail, proxy: makeProxy, film: makeFilm, forecast: makeForecast, fitResponse: fitCurve }
 
 /** The parent hears of progress about ten times a second at most. */
 const progressEveryMs = 100
