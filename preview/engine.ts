@@ -1,14 +1,13 @@
 import type { Process } from '#shared/schemas/benches'
 import type { Aim } from '#shared/schemas/curves'
 import type { Adjustments } from '#shared/schemas/negatives'
-import { toneAdjuster } from '#shared/tone/adjustments'
+import { adjustedTones } from '#shared/tone/adjustments'
 import { densityFromLightness } from '#shared/tone/density'
-import { buildLevelTable } from '#shared/tone/levels'
+import { buildForecastTable, buildLevelTable } from '#shared/tone/levels'
 import { tonalLosses, toneHistogram, type TonalLosses } from '#shared/tone/losses'
 import { mixToTonePlane, mixWeights } from '#shared/tone/mix'
 import { buildPaletteTable, lightTableLightness } from '#shared/tone/palettes'
-import { valueAt } from '#shared/tone/response'
-import type { TriptychState } from '../utils/triptych'
+import { stateLook, type TriptychState } from '#shared/tone/triptych'
 
 /** All that the three states are made from, besides the picture. */
 export interface PreviewOrder {
@@ -59,16 +58,12 @@ export class PreviewEngine {
 
   setOrder(order: PreviewOrder): void {
     this.order = order
-    const { adjustments, aim, response, dim } = order
-    const adjust = toneAdjuster(adjustments)
-    this.lightness = tableByCode(code => 100 * adjust(code / greatestCode))
-    this.levels = buildLevelTable({ adjustments, aim, response })
-    this.forecast = this.levels.map(level => valueAt(response, level))
-    this.tables = {
-      photo: buildPaletteTable(dim ? 'dim' : 'photo', this.lightness),
-      film: buildPaletteTable(dim ? 'dim' : 'film', this.levels.map(lightTableLightness)),
-      print: buildPaletteTable(dim ? 'dim' : order.process, this.forecast),
-    }
+    const settings = { adjustments: order.adjustments, aim: order.aim, response: order.response }
+    this.lightness = adjustedTones(order.adjustments).map(tone => 100 * tone)
+    this.levels = buildLevelTable(settings)
+    this.forecast = buildForecastTable(settings, this.levels)
+    const table = (state: TriptychState, lightness: Float64Array) => buildPaletteTable(stateLook(state, order.dim ? 'dim' : order.process), lightness)
+    this.tables = { photo: table('photo', this.lightness), film: table('film', this.levels.map(lightTableLightness)), print: table('print', this.forecast) }
     this.mix()
   }
 
@@ -139,9 +134,3 @@ export function codeRange(histogram: Uint32Array, leftOut = 0.001): [low: number
 }
 
 const cssColour = (pixel: number): string => `rgb(${pixel & 255} ${(pixel >> 8) & 255} ${(pixel >> 16) & 255})`
-
-function tableByCode(value: (code: number) => number): Float64Array {
-  const table = new Float64Array(greatestCode + 1)
-  for (let code = 0; code <= greatestCode; code++) table[code] = value(code)
-  return table
-}

@@ -1,3 +1,4 @@
-export const triptychStates = ['photo', 'film', 'print'] as const
-export type TriptychState = typeof triptychStates[number]
+import type { TriptychState } from '#shared/tone/triptych'
+
+export { triptychStates, type TriptychState } from '#shared/tone/triptych'
 export const stateNames: Record<TriptychState, string> = { photo: 'Photo', film: 'Film', print: 'Print' }

@@ -1,7 +1,6 @@
-import { toneAdjuster } from './adjustments'
+import { adjustedTones } from './adjustments'
 import { buildForecastTable, buildLevelTable, type LevelSettings } from './levels'
 import { buildPaletteTable, lightTableLightness, type PaletteKind } from './palettes'
-import { greatestCode } from './working-space'
 
 export const triptychStates = ['photo', 'film', 'print'] as const
 export type TriptychState = typeof triptychStates[number]
@@ -14,8 +13,7 @@ export type TriptychState = typeof triptychStates[number]
 export function stateLightness(state: TriptychState, settings: LevelSettings): Float64Array {
   if (state === 'film') return buildLevelTable(settings).map(lightTableLightness)
   if (state === 'print') return buildForecastTable(settings)
-  const adjust = toneAdjuster(settings.adjustments)
-  return Float64Array.from({ length: greatestCode + 1 }, (_, code) => 100 * adjust(code / greatestCode))
+  return adjustedTones(settings.adjustments).map(tone => 100 * tone)
 }
 
 /** The look of a state; prints have their process's, and in the dim room all are amber. */
