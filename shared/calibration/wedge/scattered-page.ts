@@ -1,0 +1,38 @@
+import { ComputeError } from '../../errors'
+import { bandsMm, layOutFrame } from './frame'
+import type { RectMm, WedgePage } from './page'
+import { rect } from './page'
+
+/** Side of a scattered wedge's cell, mm. */
+export const cellSideMm = 7
+
+/** Grids of cells that a scattered wedge is made in, the largest first. */
+export const scatteredGrids = [{ columns: 24, rows: 24 }, { columns: 24, rows: 16 }, { columns: 16, rows: 12 }] as const
+export type ScatteredGrid = typeof scatteredGrids[number]
+
+/** The page of a scattered wedge: cells of 7 mm without gaps, row by row from the top left. */
+export function scatteredPage({ columns, rows }: ScatteredGrid): WedgePage {
+  const frame = layOutFrame(columns * cellSideMm, rows * cellSideMm)
+  const patches: RectMm[] = []
+  for (let row = 0; row < rows; row++) {
+    for (let column = 0; column < columns; column++) {
+      patches.push(rect(frame.field.xMm + column * cellSideMm, frame.field.yMm + row * cellSideMm, cellSideMm))
+    }
+  }
+  return { ...frame, kind: 'scattered', columns, rows, patches, pixelsPerInch: null }
+}
+
+/**
+ * The largest grid whose film fits a sheet of the given size (mm, either way round): 24 × 24 takes 200 × 194 mm,
+ * 24 × 16 takes 200 × 138 mm, 16 × 12 takes 144 × 110 mm.
+ * @throws ComputeError `invalid_input` when not even the smallest fits.
+ */
+export function gridForSheet(widthMm: number, heightMm: number): ScatteredGrid {
+  const [long, short] = [Math.max(widthMm, heightMm), Math.min(widthMm, heightMm)]
+  const fits = scatteredGrids.find(({ columns, rows }) => {
+    const sides = [bandsMm.left + columns * cellSideMm + bandsMm.right, bandsMm.top + rows * cellSideMm + bandsMm.bottom]
+    return Math.max(...sides) <= long && Math.min(...sides) <= short
+  })
+  if (!fits) throw new ComputeError('invalid_input', `The smallest wedge takes 144 × 110 mm of film; ${widthMm} × ${heightMm} mm is too small for it.`)
+  return fits
+}
