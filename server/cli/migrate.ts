@@ -1,22 +1,12 @@
-import { createHash } from 'node:crypto'
-import { readFileSync } from 'node:fs'
-import { join } from 'node:path'
 import { drizzle } from 'drizzle-orm/node-postgres'
 import { migrate } from 'drizzle-orm/node-postgres/migrator'
 import pg from 'pg'
 import { installQueue } from '../jobs/queue'
+import { knownMigrations, migrationsFolder } from './known-migrations'
 
 // The migrate step, before web and worker start. `--check` only prints how many migrations wait, and how many there are.
 
-const folder = join(import.meta.dirname, 'migrations')
 const lockKey = 7_203_441
-
-interface Journal { entries: { tag: string, when: number }[] }
-
-function ours(): { tag: string, hash: string }[] {
-  const { entries } = JSON.parse(readFileSync(join(folder, 'meta/_journal.json'), 'utf8')) as Journal
-  return entries.map(({ tag }) => ({ tag, hash: createHash('sha256').update(readFileSync(join(folder, `${tag}.sql`))).digest('hex') }))
-}
 
 async function applied(client: pg.Client): Promise<string[]> {
   const { rows: [table] } = await client.query(`select to_regclass('drizzle.__drizzle_migrations') as name`)
@@ -27,7 +17,7 @@ async function applied(client: pg.Client): Promise<string[]> {
 
 /** Forward only: what the database has must be the beginning of what this version knows. */
 async function pending(client: pg.Client): Promise<{ pending: string[], applied: number }> {
-  const known = ours()
+  const known = knownMigrations()
   const done = await applied(client)
   if (done.length > known.length) throw new Error(`The database has ${done.length} migrations, this version knows ${known.length}: it was made by a newer version. Start that version, or restore the dump made before it.`)
   const strange = done.findIndex((hash, i) => hash !== known[i]!.hash)
@@ -38,7 +28,7 @@ async function pending(client: pg.Client): Promise<{ pending: string[], applied:
 async function migrateAll(client: pg.Client, url: string): Promise<void> {
   await client.query('select pg_advisory_lock($1)', [lockKey])
   await pending(client)
-  await migrate(drizzle(client), { migrationsFolder: folder })
+  await migrate(drizzle(client), { migrationsFolder })
   await installQueue(url)
 }
 

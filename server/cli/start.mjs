@@ -59,7 +59,7 @@ async function serve(lock) {
   undo.push(() => Promise.all([web.stop(graceSeconds), worker.stop(graceSeconds)]))
   await untilReady(address)
   say(`\nEmulside is at ${process.env.NUXT_PUBLIC_URL ?? address}`)
-  if (demo) say(`Demo sign-in: ${demo.email}  password: ${demo.password}`)
+  if (demo) say(`Demo sign-in: ${demo.email} (or technician@…, member@…), password: ${demo.password}`)
   if (!development) say(`Logs: ${inData('logs')}`)
   say('Ctrl-C stops everything.\n')
 }
