@@ -38,6 +38,13 @@ export function useStart() {
   const shape = computed(() => size.value.widthMm / size.value.heightMm)
   const crop = computed(() => photo.value && largestCrop(photo.value, { quarterTurns: 0, straightenDegrees: 0 }, shape.value))
 
+  const startingCurve = (name: Process): CurveInUse => ({ response: starterResponse(name).response, aim: 'even-lightness', calibrated: false })
+
+  async function curveOf(bench: Bench): Promise<CurveInUse> {
+    if (!bench.curveInUse) throw new ApiError(422, 'no_curve', 'This bench has no curve in use yet. Put one in use, or take the process’s starting curve.')
+    return call(contract.curve, { params: { ...studio.params, curve: bench.curveInUse.id } })
+  }
+
   watch(source, async (chosen) => {
     problem.value = null
     try {
@@ -49,13 +56,6 @@ export function useStart() {
       problem.value = sentenceOf(error)
     }
   }, { immediate: true })
-
-  const startingCurve = (name: Process): CurveInUse => ({ response: starterResponse(name).response, aim: 'even-lightness', calibrated: false })
-
-  async function curveOf(bench: Bench): Promise<CurveInUse> {
-    if (!bench.curveInUse) throw new ApiError(422, 'no_curve', 'This bench has no curve in use yet. Put one in use, or take the process’s starting curve.')
-    return call(contract.curve, { params: { ...studio.params, curve: bench.curveInUse.id } })
-  }
 
   let made: { key: string, negative: Negative } | undefined
 
