@@ -10,7 +10,7 @@ export class FilmFile {
   position = 0
 
   constructor(private readonly path: string) {
-    this.file = openSync(path, 'wx')
+    this.file = openSync(path, 'w')
   }
 
   write(bytes: Buffer): void {

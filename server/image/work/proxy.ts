@@ -20,7 +20,7 @@ export function workingChannels(picture: StoredPicture, geometry: Geometry, widt
 export async function makeProxy({ path, target, geometry, width, height }: ImageCalls['proxy']['in']): Promise<ImageCalls['proxy']['out']> {
   const channels = workingChannels(await decodePicture(path), geometry, width, height)
   const bytes = Buffer.from(channels.buffer)
-  const file = openSync(target, 'wx')
+  const file = openSync(target, 'w')
   try {
     for (let done = 0; done < bytes.length;) done += writeSync(file, bytes, done)
   }
