@@ -1,7 +1,7 @@
 import { isotonic } from './isotonic'
 
-/** Half width of a pointwise 95 % band in standard deviations of the draws: normal quantile × 1.2, which covers 96 %. */
-const halfWidth = 1.96 * 1.2
+/** Half width of a pointwise 95 % band in standard deviations of the draws: the normal quantile. */
+const halfWidth = 1.96
 
 /** Pointwise 95 % band about a curve from draws at the same positions; never falling, never inside the curve. */
 export function bandsOf(curve: Float64Array, draws: readonly Float64Array[]): { low: Float64Array, high: Float64Array } {

@@ -25,23 +25,38 @@ export function medianDeviation(values: ArrayLike<number>): number {
   return madToDeviation * median(Float64Array.from(values, v => Math.abs(v - centre)))
 }
 
+/** A point's value is compared with so many neighbours in level on each side. */
+const neighbours = 2
+
 /**
  * For each point whether it is sound. A point is spoiled when its residual from the first fit, less the median residual,
- * exceeds 4 × 1.4826 MAD (Hampel identifier: Davies and Gather, JASA 88:782–792, 1993), at least 1 L*. In each of at most
- * 3 passes the points found are left out of the next fit; no more than a fifth of all.
+ * exceeds 4 × 1.4826 MAD (Hampel identifier: Davies and Gather, JASA 88:782–792, 1993), at least 1 L*, *and* it breaks the
+ * order: too light though lighter than a next one, too dark though darker than one before (else a steep part that the first
+ * fit cuts short would be taken for dirt). Of near neighbours only the worst is dropped in a pass, as it bends the fit away
+ * from the others. In each of at most 3 passes the points found are left out of the next fit; no more than a fifth of all.
  */
 export function dropOutliers(points: readonly ResponsePoint[]): boolean[] {
   const used = points.map(() => true)
   for (let pass = 0; pass < passes; pass++) {
-    const fit = firstFit(inOrder(points.filter((_, i) => used[i])))
-    const residuals = points.map(p => p.lightness - valueAt(fit, p.level))
-    const sound = residuals.filter((_, i) => used[i])
-    const [centre, limit] = [median(sound), dropBeyond * Math.max(leastDeviation, medianDeviation(sound))]
-    const spoiled = [...points.keys()].filter(i => used[i] && Math.abs(residuals[i]! - centre) > limit)
-      .sort((a, b) => Math.abs(residuals[b]! - centre) - Math.abs(residuals[a]! - centre))
-    const room = Math.floor(greatestShare * points.length) - used.filter(u => !u).length
+    const order = inOrder([...points.keys()].filter(i => used[i]).map(i => ({ ...points[i]!, i })))
+    const fit = firstFit(order)
+    const residuals = order.map(p => p.lightness - valueAt(fit, p.level))
+    const [centre, limit] = [median(residuals), dropBeyond * Math.max(leastDeviation, medianDeviation(residuals))]
+    const distance = (place: number): number => Math.abs(residuals[place]! - centre)
+    const isWorst = (place: number): boolean => [...order.keys()].slice(Math.max(0, place - neighbours), place + neighbours + 1).every(k => distance(k) <= distance(place))
+    const spoiled = [...order.keys()]
+      .filter(place => distance(place) > limit && isWorst(place) && breaksOrder(order, place, residuals[place]! > centre))
+      .sort((a, b) => distance(b) - distance(a))
+    const room = Math.floor(greatestShare * points.length) - (points.length - order.length)
     if (spoiled.length === 0 || room <= 0) break
-    for (const i of spoiled.slice(0, room)) used[i] = false
+    for (const place of spoiled.slice(0, room)) used[order[place]!.i] = false
   }
   return used
+}
+
+function breaksOrder(order: readonly ResponsePoint[], place: number, isLight: boolean): boolean {
+  const value = order[place]!.lightness
+  return isLight
+    ? order.slice(place + 1, place + 1 + neighbours).some(p => p.lightness < value)
+    : order.slice(Math.max(0, place - neighbours), place).some(p => p.lightness > value)
 }

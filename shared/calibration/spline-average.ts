@@ -31,16 +31,16 @@ export function averageCurve(weighed: readonly WeighedCandidate[], grids: readon
 }
 
 /**
- * Curves drawn from the mixture: each candidate by its weight, its coefficients α + s·L⁻ᵀz with M = L·Lᵀ, z standard normal.
- * At least `count` draws in all, each candidate kept in proportion.
+ * Curves drawn from the mixture: each candidate by its weight, its coefficients α + spread·s·L⁻ᵀz with M = L·Lᵀ, z standard
+ * normal. About `count` draws in all, each candidate in proportion; `spread` 1 is the posterior itself.
  */
-export function drawCurves(weighed: readonly WeighedCandidate[], grids: readonly Float64Array[], count: number, random: SeededRandom): Float64Array[] {
+export function drawCurves(weighed: readonly WeighedCandidate[], grids: readonly Float64Array[], count: number, spread: number, random: SeededRandom): Float64Array[] {
   return weighed.flatMap(({ candidate, weight }) =>
-    Array.from({ length: Math.round(weight * count) }, () => combine(grids[candidate.basis]!, drawCoefficients(candidate, random))))
+    Array.from({ length: Math.round(weight * count) }, () => combine(grids[candidate.basis]!, drawCoefficients(candidate, spread, random))))
 }
 
-function drawCoefficients({ coefficients, variance, factor }: SplineCandidate, random: SeededRandom): Float64Array {
+function drawCoefficients({ coefficients, variance, factor }: SplineCandidate, spread: number, random: SeededRandom): Float64Array {
   const n = coefficients.length
   const step = solveUpper(factor, n, Float64Array.from({ length: n }, () => random.normal()))
-  return step.map((value, i) => coefficients[i]! + Math.sqrt(variance) * value)
+  return step.map((value, i) => coefficients[i]! + spread * Math.sqrt(variance) * value)
 }

@@ -30,15 +30,17 @@ export interface SplineCandidate {
 export function splineCandidates(bases: readonly Float64Array[], y: Float64Array): SplineCandidate[] {
   const columns = bases[0]!.length / y.length
   const penalty = differencePenalty(columns, penaltyOrder)
-  let square = 0
-  for (const value of y) square += value * value
   return bases.flatMap((basis, index) => {
-    const [gram, moments] = normalEquations(basis, y, columns)
-    return smoothings.map(smoothing => ({ basis: index, smoothing, ...penalisedFit(gram, moments, square, penalty, smoothing, y.length) }))
+    const equations = normalEquations(basis, y, columns)
+    return smoothings.map(smoothing => ({ basis: index, smoothing, ...penalisedFit(equations, penalty, smoothing) }))
   })
 }
 
-function penalisedFit(gram: Float64Array, moments: Float64Array, square: number, penalty: Float64Array, smoothing: number, rows: number) {
+/** BᵀB, Bᵀy, yᵀy and the number of rows. */
+export interface NormalEquations { gram: Float64Array, moments: Float64Array, square: number, rows: number }
+
+/** The penalised least-squares fit α = (BᵀB + λ·P)⁻¹Bᵀy and what `SplineCandidate` keeps of it. */
+export function penalisedFit({ gram, moments, square, rows }: NormalEquations, penalty: Float64Array, smoothing: number): Omit<SplineCandidate, 'basis' | 'smoothing'> {
   const columns = moments.length
   const factor = new Float64Array(gram.length)
   for (let i = 0; i < factor.length; i++) factor[i] = gram[i]! + smoothing * penalty[i]!
@@ -54,10 +56,12 @@ function penalisedFit(gram: Float64Array, moments: Float64Array, square: number,
   return { criterion, coefficients, variance, factor }
 }
 
-/** BᵀB (lower and upper) and Bᵀy. */
-function normalEquations(basis: Float64Array, y: Float64Array, columns: number): [Float64Array, Float64Array] {
+/** The normal equations of a basis (rows × columns, by rows) and values. */
+export function normalEquations(basis: Float64Array, y: Float64Array, columns: number): NormalEquations {
   const [gram, moments] = [new Float64Array(columns * columns), new Float64Array(columns)]
+  let square = 0
   for (let row = 0, at = 0; row < y.length; row++, at += columns) {
+    square += y[row]! * y[row]!
     for (let i = 0; i < columns; i++) {
       const value = basis[at + i]!
       if (value === 0) continue
@@ -66,7 +70,7 @@ function normalEquations(basis: Float64Array, y: Float64Array, columns: number):
     }
   }
   for (let i = 0; i < columns; i++) for (let j = i + 1; j < columns; j++) gram[i * columns + j] = gram[j * columns + i]!
-  return [gram, moments]
+  return { gram, moments, square, rows: y.length }
 }
 
 function trace(matrix: Float64Array, n: number): number {
