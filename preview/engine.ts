@@ -6,7 +6,7 @@ import { densityFromLightness } from '#shared/tone/density'
 import { buildForecastTable, buildLevelTable } from '#shared/tone/levels'
 import { tonalLosses, toneHistogram, type TonalLosses } from '#shared/tone/losses'
 import { mixToTonePlane, mixWeights } from '#shared/tone/mix'
-import { buildPaletteTable, lightTableLightness } from '#shared/tone/palettes'
+import { buildPaletteTable, lightTableLightnesses } from '#shared/tone/palettes'
 import { stateLook, type TriptychState } from '#shared/tone/triptych'
 
 /** All that the three states are made from, besides the picture. */
@@ -59,11 +59,12 @@ export class PreviewEngine {
   setOrder(order: PreviewOrder): void {
     this.order = order
     const settings = { adjustments: order.adjustments, aim: order.aim, response: order.response }
-    this.lightness = adjustedTones(order.adjustments).map(tone => 100 * tone)
-    this.levels = buildLevelTable(settings)
+    const tones = adjustedTones(order.adjustments)
+    this.lightness = tones.map(tone => 100 * tone)
+    this.levels = buildLevelTable(settings, tones)
     this.forecast = buildForecastTable(settings, this.levels)
     const table = (state: TriptychState, lightness: Float64Array) => buildPaletteTable(stateLook(state, order.dim ? 'dim' : order.process), lightness)
-    this.tables = { photo: table('photo', this.lightness), film: table('film', this.levels.map(lightTableLightness)), print: table('print', this.forecast) }
+    this.tables = { photo: table('photo', this.lightness), film: table('film', lightTableLightnesses(this.levels)), print: table('print', this.forecast) }
     this.mix()
   }
 

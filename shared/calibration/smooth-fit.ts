@@ -26,7 +26,7 @@ export function fitSmooth(points: readonly ResponsePoint[], drawCount: number): 
   return { curve: averageCurve(weighed, grids), draws: drawCurves(weighed, grids, drawCount, spread, seededRandom(1)) }
 }
 
-/** Widening of the draws: what simulated systems showed that smoothing hides (95 % bands then held 94 to 97 %). */
+/** Widening of the draws, for what smoothing hides: with it 95 % bands held 94 to 96 % on simulated systems, 9 to 51 levels. */
 const drawSpread = 1.5
 /** About what a response takes of the data's degrees of freedom. */
 const freedomOfCurve = 6

@@ -36,11 +36,12 @@ export function curveLevels(response: Response, aim: Aim): Float64Array {
 }
 
 /**
- * Ink level 0 … 1 for each of the 65 536 codes of the tone plane (tone = code / 65535), never falling.
+ * Ink level 0 … 1 for each of the 65 536 codes of the tone plane (tone = code / 65535), never falling. `tones` spares
+ * making `adjustedTones(adjustments)` twice.
  * @throws ComputeError for a setting out of range or a response that is not one.
  */
-export function buildLevelTable({ adjustments, aim, response }: LevelSettings): Float64Array {
-  return interpolateAll(curveLevels(response, aim), adjustedTones(adjustments))
+export function buildLevelTable({ adjustments, aim, response }: LevelSettings, tones = adjustedTones(adjustments)): Float64Array {
+  return interpolateAll(curveLevels(response, aim), tones)
 }
 
 /**

@@ -1,12 +1,14 @@
 import { ComputeError } from '../errors'
 import { lightnessFromDensity } from './density'
 import { dimColour } from './dim'
+import { requireNumber } from './domain'
 import { xyzFromLab } from './lab'
 import type { LabPoint, Look } from './looks'
 import { lookPaths } from './looks'
 import { pchip } from '../calibration/pchip'
 import { srgbFromXyz } from './colour-spaces'
 import { transform } from './matrix'
+import { interpolateAll } from './response'
 import { linearToSrgb } from './srgb'
 import { greatestCode } from './working-space'
 
@@ -53,7 +55,17 @@ const fullInkDensity = 1.9
  * @throws ComputeError `invalid_input` outside 0 … 1.
  */
 export function lightTableLightness(level: number): number {
-  return lightnessFromDensity(clearFilmDensity + fullInkDensity * level)
+  return lightnessFromDensity(clearFilmDensity + fullInkDensity * requireNumber(level, 'An ink level', 0, 1))
+}
+
+/** Steps between which `lightTableLightnesses` draws straight lines: within 0.0001 L*. */
+const lightTableSteps = 4096
+let lightTable: Float64Array | undefined
+
+/** `lightTableLightness` of many levels 0 … 1, which are not checked; for whole tables. */
+export function lightTableLightnesses(levels: ArrayLike<number>): Float64Array {
+  lightTable ??= Float64Array.from({ length: lightTableSteps + 1 }, (_, i) => lightTableLightness(i / lightTableSteps))
+  return interpolateAll(lightTable, levels)
 }
 
 function pathPixels(kind: PaletteKind): Uint32Array {

@@ -1,6 +1,6 @@
 import { adjustedTones } from './adjustments'
 import { buildForecastTable, buildLevelTable, type LevelSettings } from './levels'
-import { buildPaletteTable, lightTableLightness, type PaletteKind } from './palettes'
+import { buildPaletteTable, lightTableLightnesses, type PaletteKind } from './palettes'
 
 export const triptychStates = ['photo', 'film', 'print'] as const
 export type TriptychState = typeof triptychStates[number]
@@ -11,7 +11,7 @@ export type TriptychState = typeof triptychStates[number]
  * @throws ComputeError as `buildLevelTable`.
  */
 export function stateLightness(state: TriptychState, settings: LevelSettings): Float64Array {
-  if (state === 'film') return buildLevelTable(settings).map(lightTableLightness)
+  if (state === 'film') return lightTableLightnesses(buildLevelTable(settings))
   if (state === 'print') return buildForecastTable(settings)
   return adjustedTones(settings.adjustments).map(tone => 100 * tone)
 }

@@ -2,7 +2,7 @@ import { converter } from 'culori'
 import { describe, expect, it } from 'vitest'
 import { processes } from '../../../shared/schemas/benches'
 import { otherLooks } from '../../../shared/tone/looks'
-import { buildPaletteTable, lightTableLightness, lookColour } from '../../../shared/tone/palettes'
+import { buildPaletteTable, lightTableLightness, lightTableLightnesses, lookColour } from '../../../shared/tone/palettes'
 import type { Rgb8 } from '../../../shared/tone/palettes'
 
 const toLab = converter('lab')
@@ -77,5 +77,11 @@ describe('film on the light table', () => {
     expect(lightTableLightness(0)).toBeGreaterThan(93)
     expect(lightTableLightness(1)).toBeLessThan(12)
     for (let i = 1; i <= 100; i++) expect(lightTableLightness(i / 100)).toBeLessThan(lightTableLightness((i - 1) / 100))
+  })
+
+  it('is the same for whole tables', () => {
+    const levels = Float64Array.from({ length: 65536 }, (_, i) => (i / 65535) ** 2)
+    const table = lightTableLightnesses(levels)
+    levels.forEach((level, i) => { if (!(Math.abs(table[i]! - lightTableLightness(level)) < 1e-4)) expect.fail(`level ${level}`) })
   })
 })
