@@ -21,12 +21,6 @@ export const formatSigned = (value: number, maxDigits = 0): string => (value > 0
 /** A share as per cent: 0.018 → `1.8 %`. */
 export const formatPercent = (share: number, maxDigits = 1): string => `${formatDecimal(share * 100, maxDigits)} %`
 
-/** Seconds as people say them at the lamp: 260 → `4 min 20 s`. */
-export function formatExposure(seconds: number): string {
-  const whole = Math.round(seconds)
-  return whole < 60 ? `${formatDecimal(seconds, 1)} s` : `${Math.floor(whole / 60)} min ${whole % 60} s`
-}
-
 /** Today's hour, else the weekday within a week, else the date. */
 export function formatWhen(instant: string, now = new Date()): string {
   const date = new Date(instant)
@@ -42,3 +36,7 @@ export function formatBytes(bytes: number): string {
   const [divisor, unit] = bytes < 1e6 ? [1e3, 'kB'] : bytes < 1e9 ? [1e6, 'MB'] : [1e9, 'GB']
   return `${formatDecimal(bytes / divisor, 1)} ${unit}`
 }
+
+/** Writes a number with exactly so many digits after the separator, for columns whose separators stand in line. */
+export const formatFixed = (value: number, digits: number): string =>
+  new Intl.NumberFormat(figureLocale(), { minimumFractionDigits: digits, maximumFractionDigits: digits, useGrouping: false }).format(value).replace(/^-(0[.,]?0*)$/, '$1').replace('-', '−')

@@ -1,0 +1,80 @@
+import type { Curve, Reading } from '#shared/schemas/curves'
+import { densityFromLightness } from '#shared/tone/density'
+
+export interface PlotPoint { x: number, y: number }
+export type ChartCurve = Pick<Curve, 'points' | 'response'>
+
+/** The bench's response: print lightness (y) against ink in per cent (x). */
+export const responseLine = (curve: ChartCurve): PlotPoint[] => curve.response.map((y, i) => ({ x: i / (curve.response.length - 1) * 100, y }))
+
+/** What the film says: ink in per cent (y) against wanted tone in per cent (x). */
+export const toneLine = (curve: ChartCurve): PlotPoint[] => curve.points.map(p => ({ x: p.tone * 100, y: p.level * 100 }))
+
+export interface Band { lower: PlotPoint[], upper: PlotPoint[] }
+
+/** The 95 % band of the tone curve, in ink per cent. */
+export const toneBand = (curve: ChartCurve): Band => ({
+  lower: curve.points.map(p => ({ x: p.tone * 100, y: p.levelLow * 100 })),
+  upper: curve.points.map(p => ({ x: p.tone * 100, y: p.levelHigh * 100 })),
+})
+
+/** The same band seen in the print: where more ink might be needed the print may come out darker than the line. */
+export function responseBand(curve: ChartCurve): Band {
+  const line = responseLine(curve)
+  const lightness = curve.points.map(p => valueAt(line, p.level * 100))
+  return {
+    lower: curve.points.map((p, i) => ({ x: p.levelHigh * 100, y: lightness[i]! })),
+    upper: curve.points.map((p, i) => ({ x: p.levelLow * 100, y: lightness[i]! })),
+  }
+}
+
+/** Every patch that was read: ink in per cent and print lightness. */
+export const measuredPoints = (readings: readonly Pick<Reading, 'patches'>[]): PlotPoint[] =>
+  readings.flatMap(reading => reading.patches)
+    .filter(patch => patch.lightness !== null && patch.used)
+    .map(patch => ({ x: patch.level * 100, y: patch.lightness! }))
+
+/** Linear interpolation in a line of increasing x; held at its ends. */
+export function valueAt(line: readonly PlotPoint[], x: number): number {
+  let low = 0
+  let high = line.length - 1
+  if (x <= line[low]!.x) return line[low]!.y
+  if (x >= line[high]!.x) return line[high]!.y
+  while (high - low > 1) {
+    const middle = (low + high) >> 1
+    if (line[middle]!.x <= x) low = middle
+    else high = middle
+  }
+  const a = line[low]!
+  const b = line[high]!
+  return b.x === a.x ? a.y : a.y + (b.y - a.y) * (x - a.x) / (b.x - a.x)
+}
+
+/** What is left over: measured less curve in L*, with the band about the curve at every 2 % of ink. */
+export function leftOver(curve: ChartCurve, measured: readonly PlotPoint[]): { points: PlotPoint[], band: Band } {
+  const line = responseLine(curve)
+  const band = responseBand(curve)
+  const inks = Array.from({ length: 51 }, (_, i) => i * 2)
+  const aboutZero = (edge: PlotPoint[]) => inks.map(x => ({ x, y: valueAt(edge, x) - valueAt(line, x) }))
+  return {
+    points: measured.map(p => ({ x: p.x, y: p.y - valueAt(line, p.x) })),
+    band: { lower: aboutZero(band.lower), upper: aboutZero(band.upper) },
+  }
+}
+
+export interface CurveRow { tone: number, lightness: number, density: number, ink: number, inkLow: number, inkHigh: number }
+
+/** The table beside the chart: tone in per cent, print lightness, absolute density, ink in per cent with its 95 % band. */
+export function curveRows(curve: ChartCurve, steps = 21): CurveRow[] {
+  const ink = toneLine(curve)
+  const response = responseLine(curve)
+  const band = toneBand(curve)
+  return Array.from({ length: steps }, (_, i) => {
+    const tone = i / (steps - 1)
+    const inkAtTone = valueAt(ink, tone * 100)
+    const lightness = valueAt(response, inkAtTone)
+    return {
+      tone: tone * 100, lightness, density: densityFromLightness(lightness), ink: inkAtTone, inkLow: valueAt(band.lower, tone * 100), inkHigh: valueAt(band.upper, tone * 100),
+    }
+  })
+}
