@@ -1,3 +1,4 @@
+import { setImmediate } from 'node:timers/promises'
 import { ComputeError } from '#shared/errors'
 import type { ImageReply } from './pool'
 import type { ImageCalls } from './protocol'
@@ -19,6 +20,12 @@ function reply(message: ImageReply): void {
   process.send?.(message)
 }
 
+/** Decoded pictures lie outside the engine's own heap; the next job must not find the last one's still there. */
+async function releasePictures(): Promise<void> {
+  globalThis.gc?.()
+  await setImmediate()
+}
+
 async function run(id: number, name: keyof ImageCalls, input: never): Promise<void> {
   let reportedAt = 0
   const onProgress = (fraction: number) => {
@@ -37,6 +44,6 @@ async function run(id: number, name: keyof ImageCalls, input: never): Promise<vo
   }
 }
 
-process.on('message', ({ id, name, input }: { id: number, name: keyof ImageCalls, input: never }) => void run(id, name, input))
+process.on('message', ({ id, name, input }: { id: number, name: keyof ImageCalls, input: never }) => void run(id, name, input).then(releasePictures))
 // The parent's end is this program's end.
 process.on('disconnect', () => process.exit(0))

@@ -67,17 +67,22 @@ export function openImageChild(settings: ImageChildSettings): ImageChild {
   }
 
   /** Ends the child together with its job; what it still says is no longer heard. */
-  function discardChild(reason: unknown) {
+  function discardChild(reason: unknown): Promise<void> {
     const discarded = child
     child = undefined
-    discarded?.removeAllListeners()
-    discarded?.on('error', () => {})
-    discarded?.kill('SIGKILL')
+    const ended = new Promise<void>((resolve) => {
+      if (!discarded || discarded.exitCode !== null || discarded.signalCode !== null) return resolve()
+      discarded.removeAllListeners()
+      discarded.on('error', () => resolve())
+      discarded.once('exit', () => resolve())
+      discarded.kill('SIGKILL')
+    })
     settle(job => job.reject(reason))
+    return ended
   }
 
   function abortRunning() {
-    discardChild(running?.options.signal?.reason)
+    void discardChild(running?.options.signal?.reason)
   }
 
   function hear(reply: ImageReply) {
@@ -90,8 +95,8 @@ export function openImageChild(settings: ImageChildSettings): ImageChild {
   function startChild(): ChildProcess {
     const started = spawnLimited(settings)
     started.on('message', reply => hear(reply as ImageReply))
-    started.on('error', error => discardChild(childFailed(error.message)))
-    started.on('exit', (code, signal) => discardChild(childFailed(signal ? `its process was ended by ${signal}` : `its process ended with code ${code}`)))
+    started.on('error', error => void discardChild(childFailed(error.message)))
+    started.on('exit', (code, signal) => void discardChild(childFailed(signal ? `its process was ended by ${signal}` : `its process ended with code ${code}`)))
     return started
   }
 
@@ -104,9 +109,9 @@ export function openImageChild(settings: ImageChildSettings): ImageChild {
     child ??= startChild()
     child.channel?.ref()
     job.options.signal?.addEventListener('abort', abortRunning)
-    timer = setTimeout(() => discardChild(childFailed(`it took longer than ${settings.timeoutSeconds} s`)), settings.timeoutSeconds * 1000)
+    timer = setTimeout(() => void discardChild(childFailed(`it took longer than ${settings.timeoutSeconds} s`)), settings.timeoutSeconds * 1000)
     child.send({ id: job.id, name: job.name, input: job.input }, (error) => {
-      if (error && running === job) discardChild(childFailed(error.message))
+      if (error && running === job) void discardChild(childFailed(error.message))
     })
   }
 
@@ -129,23 +134,14 @@ export function openImageChild(settings: ImageChildSettings): ImageChild {
     async close() {
       closed = true
       for (const job of queue.splice(0)) job.reject(childFailed('the service is stopping'))
-      const ending = child
-      const ended = ending && ending.exitCode === null && ending.signalCode === null
-        ? new Promise(resolve => ending.once('close', resolve))
-        : undefined
-      if (ending) {
-        ending.kill('SIGKILL')
-        settle(job => job.reject(childFailed('the service is stopping')))
-      }
-      await ended
-      child = undefined
+      await discardChild(childFailed('the service is stopping'))
     },
   }
 }
 
 /** On Linux the shell lowers its own address-space limit and then becomes the program. */
 function spawnLimited({ programPath, addressSpaceBytes, threads = 2 }: ImageChildSettings): ChildProcess {
-  const command = [process.execPath, '--disable-wasm-trap-handler', programPath]
+  const command = [process.execPath, '--disable-wasm-trap-handler', '--expose-gc', programPath]
   const [program, ...rest] = process.platform === 'linux'
     ? ['/bin/sh', '-c', `ulimit -v ${Math.floor(addressSpaceBytes / 1024)} && exec "$@"`, 'sh', ...command]
     : command

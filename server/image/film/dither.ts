@@ -4,23 +4,22 @@
  */
 export function makeDither(width: number, channels: number): (row: Uint16Array, to: Uint8Array) => void {
   const samples = width * channels
-  // One pixel of room at both ends. Errors in 16-bit codes.
-  let below = new Float32Array(samples + 2 * channels), here = new Float32Array(samples + 2 * channels)
+  /** what each sample takes over from the row above, in 16-bit codes; rewritten for the next row behind the reading place */
+  const passed = new Float64Array(samples)
   return (row, to) => {
-    [here, below] = [below, here]
-    below.fill(0)
     for (let c = 0; c < channels; c++) {
-      let carried = 0
-      for (let i = c, at = c + channels; i < samples; i += channels, at += channels) {
-        const wanted = row[i]! + carried + here[at]!
-        const code = wanted <= 0 ? 0 : wanted >= 65535 ? 255 : (wanted / 257 + 0.5) | 0
+      let carried = 0, belowLeft = 0, below = 0
+      for (let i = c; i < samples; i += channels) {
+        const wanted = row[i]! + carried + passed[i]!
+        const code = wanted <= 0 ? 0 : wanted >= 65535 ? 255 : (wanted * (1 / 257) + 0.5) | 0
         to[i] = code
         const error = wanted - 257 * code
         carried = error * (7 / 16)
-        below[at - channels]! += error * (3 / 16)
-        below[at]! += error * (5 / 16)
-        below[at + channels]! += error * (1 / 16)
+        if (i >= channels) passed[i - channels] = belowLeft + error * (3 / 16)
+        belowLeft = below + error * (5 / 16)
+        below = error * (1 / 16)
       }
+      passed[samples - channels + c] = belowLeft
     }
   }
 }

@@ -22,8 +22,18 @@ export const cubic: Kernel = {
   },
 }
 
-/** Taps for `wanted` samples over the stretch that starts at `start` and has `length` of the `stored` samples; the ends are repeated outwards. */
-function makeTaps(kernel: Kernel, scale: number, start: number, length: number, wanted: number, stored: number): Taps {
+/** Which stored sample stands for one beyond the ends. */
+type Beyond = (index: number, stored: number) => number
+const repeatLast: Beyond = (index, stored) => Math.max(0, Math.min(index, stored - 1))
+/** Mirrors about the last sample, so that a fine regular pattern goes on as it is. */
+const mirrorAtLast: Beyond = (index, stored) => {
+  const period = Math.max(1, 2 * (stored - 1))
+  const within = ((index % period) + period) % period
+  return within < stored ? within : period - within
+}
+
+/** Taps for `wanted` samples over the stretch that starts at `start` and has `length` of the `stored` samples. */
+function makeTaps(kernel: Kernel, scale: number, beyond: Beyond, start: number, length: number, wanted: number, stored: number): Taps {
   const ratio = length / wanted, reach = kernel.reach * scale
   const count = Math.min(stored, Math.ceil(2 * reach))
   const first = new Int32Array(wanted)
@@ -36,7 +46,7 @@ function makeTaps(kernel: Kernel, scale: number, start: number, length: number, 
     let sum = 0
     for (let k = low; k <= high; k++) {
       const weight = kernel.at((k - centre) / scale)
-      exact[Math.max(0, Math.min(k, stored - 1)) - first[i]!]! += weight
+      exact[beyond(k, stored) - first[i]!]! += weight
       sum += weight
     }
     for (let k = 0; k < count; k++) weights[i * count + k] = exact[k]! / sum
@@ -45,9 +55,9 @@ function makeTaps(kernel: Kernel, scale: number, start: number, length: number, 
 }
 
 export const averagingTaps = (start: number, length: number, wanted: number, stored: number) =>
-  makeTaps(tent, Math.max(1, length / wanted), start, length, wanted, stored)
+  makeTaps(tent, Math.max(1, length / wanted), mirrorAtLast, start, length, wanted, stored)
 export const interpolatingTaps = (start: number, length: number, wanted: number, stored: number) =>
-  makeTaps(cubic, 1, start, length, wanted, stored)
+  makeTaps(cubic, 1, repeatLast, start, length, wanted, stored)
 
 /** `to[i] = Σ weight · from[…]` along a row. */
 export function applyTaps(taps: Taps, from: Float32Array | Uint16Array, to: Float32Array): void {
