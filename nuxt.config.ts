@@ -32,6 +32,8 @@ export default defineNuxtConfig({
     xssValidator: false,
     rateLimiter: false,
     requestSizeLimiter: false,
+    // No other site's page may read answers: no CORS headers at all.
+    corsHandler: false,
     headers: {
       contentSecurityPolicy: {
         'img-src': ['\'self\'', 'data:', 'blob:'],

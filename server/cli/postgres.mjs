@@ -28,6 +28,7 @@ export async function openCluster({ folder, keep, role = 'emulside', database = 
   prepareDatabase(sql, role, kept.rolePassword, database)
   return {
     programs, folder: place, adopted: Boolean(adoptedPort), sql,
+    superuserUrl: address('postgres', kept.superuserPassword, 'postgres'),
     urlOf: name => address(role, kept.rolePassword, name),
     url: address(role, kept.rolePassword, database),
     stop: () => stopServer(place, call),

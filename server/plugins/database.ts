@@ -1,7 +1,6 @@
 import { readSettings } from '../config'
-import { closeDatabase, openDatabase } from '../db/client'
+import { openDatabase } from '../db/client'
 
-export default defineNitroPlugin((nitro) => {
+export default defineNitroPlugin(() => {
   openDatabase(readSettings().DATABASE_URL)
-  nitro.hooks.hook('close', closeDatabase)
 })

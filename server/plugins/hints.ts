@@ -1,7 +1,6 @@
 import { readSettings } from '../config'
-import { startHints, stopHints } from '../services/hint-hub'
+import { startHints } from '../services/hint-hub'
 
-export default defineNitroPlugin((nitro) => {
+export default defineNitroPlugin(() => {
   void startHints(readSettings().DATABASE_URL)
-  nitro.hooks.hook('close', stopHints)
 })

@@ -1,8 +1,24 @@
+import { closeDatabase } from '../db/client'
 import { log } from '../log'
+import { stopHints } from '../services/hint-hub'
 import { noteStopping } from '../services/health'
+import { closeImageChild } from '../services/image-child'
 
-/** First of all the service says that it isn't ready; Nitro stops accepting, waits for answers, and calls `close`. */
+/**
+ * The order of an end: say that we aren't ready and end the event streams (an open one would keep its connection);
+ * Nitro meanwhile accepts nothing new and waits for answers, ten seconds at most; then the child, then the database.
+ */
 export default defineNitroPlugin((nitro) => {
-  for (const signal of ['SIGTERM', 'SIGINT'] as const) process.once(signal, noteStopping)
-  nitro.hooks.hook('close', () => log('info', 'web.stopped'))
+  process.env.NITRO_SHUTDOWN_TIMEOUT ??= '10000'
+  for (const signal of ['SIGTERM', 'SIGINT'] as const) {
+    process.once(signal, () => {
+      noteStopping()
+      void stopHints()
+    })
+  }
+  nitro.hooks.hook('close', async () => {
+    await closeImageChild()
+    await closeDatabase()
+    log('info', 'web.stopped')
+  })
 })

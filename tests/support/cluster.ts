@@ -18,6 +18,7 @@ export async function openTestCluster() {
   migrate(cluster.urlOf(template))
   return {
     urlOf: cluster.urlOf,
+    superuserUrl: cluster.superuserUrl,
     stop: cluster.stop,
     /** a fresh copy of the migrated template; answers its address */
     cloneTemplate(name: string) {

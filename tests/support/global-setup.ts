@@ -11,8 +11,10 @@ declare module 'vitest' {
   export interface ProvidedContext {
     /** one running application a vitest worker, by pool number */
     applications: Application[]
-    /** the role that owns every test database, for tests that make clusters, databases and processes of their own */
+    /** a scratch database, as the role that owns every test database */
     databaseUrl: string
+    /** the same as superuser, for tests that make databases of their own */
+    superuserUrl: string
   }
 }
 
@@ -25,11 +27,13 @@ export default async function setup(project: TestProject) {
   if (TEST_ADDRESS) {
     project.provide('applications', [{ address: TEST_ADDRESS, databaseUrl: DATABASE_URL ?? '', storage: '' }])
     project.provide('databaseUrl', DATABASE_URL ?? '')
+    project.provide('superuserUrl', '')
     return
   }
   const started = await (shared.harness ??= start(Number(project.vitest.config.maxWorkers)))
   project.provide('applications', started.applications)
   project.provide('databaseUrl', started.databaseUrl)
+  project.provide('superuserUrl', started.superuserUrl)
   shared.users += 1
   return async () => {
     shared.users -= 1
@@ -51,6 +55,7 @@ async function start(count: number) {
   return {
     applications: running.map(({ address, databaseUrl, storage }) => ({ address, databaseUrl, storage })),
     databaseUrl: cluster.urlOf('scratch'),
+    superuserUrl: cluster.superuserUrl,
     async stop() {
       await Promise.all(running.map(application => application.stop()))
       cluster.stop()

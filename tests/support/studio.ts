@@ -50,8 +50,8 @@ export class Agent {
 }
 
 /** Signs up a new person with a studio of their own, by real HTTP. Every test makes its own. */
-export async function newStudio(name = 'Rope Works Studio') {
-  const agent = new Agent()
+export async function newStudio(name = 'Rope Works Studio', address = application().address) {
+  const agent = new Agent(address)
   const email = `${randomUUID()}@ropeworks.example`
   const password = `slow water ${randomUUID()}`
   const answer = await agent.post('/api/auth/register', { name: 'Ines Marlow', email, password, studioName: name })

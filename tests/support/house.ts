@@ -1,0 +1,44 @@
+import { spawnSync } from 'node:child_process'
+import { mkdtempSync } from 'node:fs'
+import { tmpdir } from 'node:os'
+import { join } from 'node:path'
+import pg from 'pg'
+import { inject, onTestFinished } from 'vitest'
+import { builtPrograms } from '../../server/cli/paths.mjs'
+import { findPrograms } from '../../server/cli/postgres-programs.mjs'
+
+/** A program of the built service, run to its end. */
+export function runProgram(name: string, args: string[], env: Record<string, string>) {
+  const ended = spawnSync(process.execPath, [join(builtPrograms, `${name}.mjs`), ...args], { env: { ...process.env, POSTGRES_BIN: findPrograms()!, ...env }, encoding: 'utf8' })
+  return { status: ended.status, text: ended.stdout + ended.stderr }
+}
+
+/** A folder of this test's own. */
+export const newFolder = () => mkdtempSync(join(tmpdir(), 'emulside-test-'))
+
+let count = 0
+/** A database of this test's own, empty or cloned from the migrated template; dropped afterwards. */
+export async function newDatabase(kind: 'empty' | 'migrated'): Promise<string> {
+  const name = `own_${process.pid}_${count++}`
+  const admin = inject('superuserUrl')
+  const once = async (text: string) => {
+    const client = new pg.Client({ connectionString: admin })
+    await client.connect()
+    await client.query(text).finally(() => client.end())
+  }
+  await once(`create database ${name} owner emulside_test template ${kind === 'empty' ? 'template1' : 'emulside_template'}`)
+  onTestFinished(() => once(`drop database if exists ${name} with (force)`))
+  const url = new URL(inject('databaseUrl'))
+  url.pathname = name
+  return url.href
+}
+
+/** A client on a database, closed when the test has finished. */
+export async function connect(url: string): Promise<pg.Client> {
+  const client = new pg.Client({ connectionString: url })
+  // The database may be dropped before the test's clients are closed.
+  client.on('error', () => {})
+  await client.connect()
+  onTestFinished(() => client.end())
+  return client
+}
