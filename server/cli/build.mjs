@@ -9,7 +9,7 @@ const sources = [
   'app.vue', 'error.vue', 'nuxt.config.ts', 'tailwind.config.ts', 'package-lock.json',
   'assets', 'components', 'composables', 'layouts', 'middleware', 'modules', 'pages', 'plugins', 'preview', 'public', 'server', 'shared', 'stores', 'utils',
 ]
-const marker = join(builtPrograms, 'built-from')
+const marker = join(builtPrograms, 'built-from.json')
 
 /** One hash over the names and contents of sources; `leaveOut` is a folder that doesn't count. */
 function hashOf(paths, leaveOut) {

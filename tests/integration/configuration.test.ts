@@ -9,8 +9,8 @@ const good = () => ({
 })
 
 describe('a wrong setting', () => {
-  it.each([['PORT', '70000'], ['LEASE_SECONDS', 'soon'], ['DATABASE_URL', 'mysql://elsewhere'], ['NUXT_SESSION_PASSWORD', 'short']])('%s stops the worker, which names it', (name, value) => {
-    const ended = runProgram('worker', [], { ...good(), [name]: value })
+  it.each([['PORT', '70000'], ['LEASE_SECONDS', 'soon'], ['DATABASE_URL', 'mysql://elsewhere'], ['NUXT_SESSION_PASSWORD', 'short']])('%s stops the worker, which names it', async (name, value) => {
+    const ended = await runProgram('worker', [], { ...good(), [name]: value })
     expect(ended.status).toBe(1)
     expect(ended.text).toContain(name)
   })

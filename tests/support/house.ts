@@ -1,4 +1,4 @@
-import { spawnSync } from 'node:child_process'
+import { spawn } from 'node:child_process'
 import { mkdtempSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
@@ -8,9 +8,14 @@ import { builtPrograms } from '../../server/cli/paths.mjs'
 import { findPrograms } from '../../server/cli/postgres-programs.mjs'
 
 /** A program of the built service, run to its end. */
-export function runProgram(name: string, args: string[], env: Record<string, string>) {
-  const ended = spawnSync(process.execPath, [join(builtPrograms, `${name}.mjs`), ...args], { env: { ...process.env, POSTGRES_BIN: findPrograms()!, ...env }, encoding: 'utf8' })
-  return { status: ended.status, text: ended.stdout + ended.stderr }
+export function runProgram(name: string, args: string[], env: Record<string, string>): Promise<{ status: number | null, text: string }> {
+  return new Promise((resolve, reject) => {
+    const child = spawn(process.execPath, [join(builtPrograms, `${name}.mjs`), ...args], { env: { ...process.env, POSTGRES_BIN: findPrograms()!, ...env } })
+    let text = ''
+    for (const stream of [child.stdout, child.stderr]) stream.on('data', chunk => text += chunk)
+    child.on('error', reject)
+    child.on('close', status => resolve({ status, text }))
+  })
 }
 
 /** A folder of this test's own. */
