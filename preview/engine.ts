@@ -27,7 +27,7 @@ export interface Summary {
   /** L* of the adjusted photo's darkest and lightest tones (1 in 1000 left out at each end), and the bench's own reach */
   photoRange: [number, number]
   printRange: [number, number]
-  /** 21 even steps of the photo's tones as each state shows them */
+  /** 21 even steps of the photo's tones as each state shows them; on mirrored film they run the other way */
   strips: Record<TriptychState, string[]>
 }
 
@@ -103,7 +103,7 @@ export class PreviewEngine {
       losses: tonalLosses(this.histogram, this.forecast, ...printRange),
       photoRange: [this.lightness[low]!, this.lightness[high]!],
       printRange,
-      strips: { photo: strip('photo'), film: strip('film'), print: strip('print') },
+      strips: { photo: strip('photo'), film: this.order!.mirror ? strip('film').reverse() : strip('film'), print: strip('print') },
     }
   }
 
