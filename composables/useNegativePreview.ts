@@ -1,7 +1,7 @@
 import { contract } from '#build/client-contract'
 import type { Curve } from '#shared/schemas/curves'
 import type { Photo } from '#shared/schemas/photos'
-import type { Settings, useNegativeEditor } from '~/composables/useNegativeEditor'
+import type { useNegativeEditor } from '~/composables/useNegativeEditor'
 import type { PreviewOrder } from '~/preview/engine'
 import { innerOf } from '~/utils/crop-choice'
 
@@ -49,9 +49,7 @@ export function useNegativePreview(editor: ReturnType<typeof useNegativeEditor>,
     adjustments: draft.value.adjustments, aim: draft.value.aim, response: curve.value.response,
     process: stored.value!.process, mirror: draft.value.mirror, dim: theme.value === 'dim',
   })
-  watch(order, (next) => {
-    if (next) preview.setOrder({ ...next, adjustments: JSON.parse(JSON.stringify(next.adjustments)) as Settings['adjustments'], response: toRaw(next.response) })
-  })
+  watch(order, next => next && preview.setOrder(next))
 
   /** Shows the film's own pixels around a place, one on one screen pixel; null shows the whole again. */
   async function lookAt(place: { x: number, y: number } | null, screen: { width: number, height: number }) {

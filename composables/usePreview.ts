@@ -35,7 +35,11 @@ export function usePreview() {
   const setSource = (picture: ProxyPicture, part: PreviewPart = 'whole') => send({ kind: 'source', part, ...picture }, [picture.channels])
   const show = (part: PreviewPart) => send({ kind: 'show', part })
 
-  const setOrder = (order: PreviewOrder) => send({ kind: 'order', order })
+  /** Reactive records cannot be sent: what is sent is a plain copy, and the long response itself. */
+  function setOrder(order: PreviewOrder) {
+    const { mix, ...points } = order.adjustments
+    send({ kind: 'order', order: { ...order, adjustments: { ...points, mix: { ...mix } }, response: toRaw(order.response) } })
+  }
   const read = (spot: { x: number, y: number } | null) => send({ kind: 'read', spot })
 
   return { summary, pictureEnds, reading, attach, setSource, show, setOrder, read }
