@@ -2,6 +2,7 @@ import { randomBytes } from 'node:crypto'
 import { existsSync, mkdirSync, readFileSync, renameSync, writeFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { builtPrograms, dataFolder, inData } from './paths.mjs'
+import { Stop } from './run.mjs'
 
 const path = inData('installation.json')
 
@@ -21,16 +22,17 @@ export function keepInstallation(kept) {
 
 /** The settings that all processes of an installation get; what the environment already says goes first. */
 export function serviceEnvironment({ databaseUrl, sessionPassword, programs = builtPrograms, build = 'development' }) {
-  const secure = process.env.NUXT_PUBLIC_URL?.startsWith('https:') || Boolean(process.env.TLS_CERT)
   return {
     HOST: '127.0.0.1', PORT: '3000', STORAGE_DIR: inData('files'), NUXT_SESSION_PASSWORD: sessionPassword,
-    NUXT_SESSION_COOKIE_SECURE: String(secure), NUXT_TELEMETRY_DISABLED: '1', BUILD: build.slice(0, 12),
+    NUXT_TELEMETRY_DISABLED: '1', BUILD: build.slice(0, 12),
     ...process.env,
     ...tls(), DATABASE_URL: databaseUrl, IMAGE_CHILD_PROGRAM: join(programs, 'image-child.mjs'),
   }
 }
 
 function tls() {
-  if (!process.env.TLS_CERT) return {}
-  return { NITRO_SSL_CERT: readFileSync(process.env.TLS_CERT, 'utf8'), NITRO_SSL_KEY: readFileSync(process.env.TLS_KEY ?? '', 'utf8') }
+  const { NUXT_PUBLIC_URL, TLS_CERT, TLS_KEY } = process.env
+  if (!TLS_CERT) return {}
+  if (!TLS_KEY || !NUXT_PUBLIC_URL?.startsWith('https:')) throw new Stop('TLS_CERT needs TLS_KEY (the key\'s file) and NUXT_PUBLIC_URL (the https:// address that people open).')
+  return { NITRO_SSL_CERT: readFileSync(TLS_CERT, 'utf8'), NITRO_SSL_KEY: readFileSync(TLS_KEY, 'utf8') }
 }

@@ -1,3 +1,5 @@
+import http from 'node:http'
+import https from 'node:https'
 import { join } from 'node:path'
 import { setTimeout as sleep } from 'node:timers/promises'
 import { ensureBuilt } from './build.mjs'
@@ -72,12 +74,20 @@ function webArguments(env) {
 async function untilReady(address) {
   const deadline = Date.now() + 120_000
   while (Date.now() < deadline && !ending) {
-    const answer = await fetch(`${address}/api/health/ready`).catch(() => undefined)
-    if (answer?.ok) return
+    if (await isReady(`${address}/api/health/ready`)) return
     await sleep(100)
   }
   if (!ending) throw new Stop(`Nothing answers at ${address}. See ${inData('logs')}.`)
 }
+
+/** The certificate isn't looked at: it is our own process on this machine. */
+const isReady = url => new Promise((resolve) => {
+  const request = (url.startsWith('https:') ? https : http).get(url, { rejectUnauthorized: false }, (answer) => {
+    answer.resume()
+    resolve(answer.statusCode === 200)
+  })
+  request.on('error', () => resolve(false))
+})
 
 /** Stops web and worker, then the database, then gives the lock back. A second signal doesn't wait. */
 function end(code) {
