@@ -7,9 +7,12 @@ import { storageKeys } from '../storage'
 
 const olderThan = (seconds: number) => ({ changedAt }: { changedAt: number }) => changedAt < Date.now() - 1000 * seconds
 
-/** Removes temporary files whose owner has not renewed them for two leases, with what they left half done. */
+/** A living owner renews its files every second; on a busy machine it may be late. */
+const latenessSeconds = 3
+
+/** Removes temporary files whose owner has let their lease run out, with what they left half done. */
 export async function sweepTemporaryFiles(leaseSeconds: number): Promise<string[]> {
-  const stale = (await storage().list('temporary')).filter(olderThan(2 * leaseSeconds))
+  const stale = (await storage().list('temporary')).filter(olderThan(leaseSeconds + latenessSeconds))
   for (const { key } of stale) {
     const [, studioId, photoId] = /^temporary\/photo_([^_.]+)_([^_.]+)\./.exec(key) ?? []
     if (studioId && photoId) await removeUnrecorded(studioId, photoId)
