@@ -21,10 +21,10 @@ export function keepInstallation(kept) {
 }
 
 /** The settings that all processes of an installation get; what the environment already says goes first. */
-export function serviceEnvironment({ databaseUrl, sessionPassword, programs = builtPrograms, build = 'development' }) {
+export function serviceEnvironment({ databaseUrl, sessionPassword, programs = builtPrograms }) {
   return {
     HOST: '127.0.0.1', PORT: '3000', STORAGE_DIR: inData('files'), NUXT_SESSION_PASSWORD: sessionPassword,
-    NUXT_TELEMETRY_DISABLED: '1', BUILD: build.slice(0, 12),
+    NUXT_TELEMETRY_DISABLED: '1',
     ...process.env,
     ...tls(), DATABASE_URL: databaseUrl, IMAGE_CHILD_PROGRAM: join(programs, 'image-child.mjs'),
   }

@@ -44,9 +44,9 @@ async function serve(lock) {
   const programs = development ? developmentBundles : builtPrograms
   let restartWorker = () => {}
   if (development) undo.push((await watchPrograms(programs, () => restartWorker())).stop)
-  const build = development ? undefined : await ensureBuilt()
+  if (!development) await ensureBuilt()
   migrateDatabase(database, programs)
-  const env = serviceEnvironment({ databaseUrl: database.url, sessionPassword: installation.sessionPassword, programs, build })
+  const env = serviceEnvironment({ databaseUrl: database.url, sessionPassword: installation.sessionPassword, programs })
   const demo = database.external ? undefined : ensureDemo(installation, programs, env)
   const address = `http${process.env.TLS_CERT ? 's' : ''}://${env.HOST.includes(':') ? `[${env.HOST}]` : env.HOST}:${env.PORT}`
   const onGivenUp = (reason) => {
