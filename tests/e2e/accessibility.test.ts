@@ -1,0 +1,64 @@
+import axe from 'axe-core'
+import { globSync } from 'node:fs'
+import { readFile } from 'node:fs/promises'
+import { describe, expect, it } from 'vitest'
+import { desk, newPage, phone, photograph, useBrowser } from '../support/browser'
+import { newStudio } from '../support/studio'
+
+useBrowser()
+
+interface Records { slug: string, photo: string, negative: string, bench: string }
+
+/** Every screen, by its page file: where it is, and what is there once it stands. */
+const screens: Record<string, { path: (r: Records) => string, stands: string, isPublic?: boolean }> = {
+  'pages/index.vue': { path: () => '/', stands: 'h1', isPublic: true },
+  'pages/open-studio.vue': { path: () => '/open-studio', stands: 'h1', isPublic: true },
+  'pages/s/[studio]/index.vue': { path: r => `/s/${r.slug}`, stands: 'h1' },
+  'pages/s/[studio]/negatives/[negative].vue': { path: r => `/s/${r.slug}/negatives/${r.negative}`, stands: '.captions' },
+  'pages/s/[studio]/photos/index.vue': { path: r => `/s/${r.slug}/photos`, stands: 'h1' },
+  'pages/s/[studio]/photos/bin.vue': { path: r => `/s/${r.slug}/photos/bin`, stands: 'h1' },
+  'pages/s/[studio]/photos/[photo].vue': { path: r => `/s/${r.slug}/photos/${r.photo}`, stands: 'h1' },
+  'pages/s/[studio]/benches/index.vue': { path: r => `/s/${r.slug}/benches`, stands: 'h1' },
+  'pages/s/[studio]/benches/new.vue': { path: r => `/s/${r.slug}/benches/new`, stands: 'h1' },
+  'pages/s/[studio]/benches/[bench]/index.vue': { path: r => `/s/${r.slug}/benches/${r.bench}`, stands: 'h1' },
+  'pages/s/[studio]/benches/[bench]/change.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/change`, stands: 'h1' },
+  'pages/s/[studio]/benches/[bench]/reading.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/reading`, stands: 'h1' },
+  'pages/s/[studio]/shelf.vue': { path: r => `/s/${r.slug}/shelf`, stands: 'h1' },
+  'pages/s/[studio]/people.vue': { path: r => `/s/${r.slug}/people`, stands: 'h1' },
+}
+
+async function newRecords() {
+  const { agent, root, studio } = await newStudio()
+  const form = new FormData()
+  form.append('file', new Blob([await readFile(photograph(1200, 900))], { type: 'image/jpeg' }), 'flower.jpg')
+  const photo = (await agent.call('POST', `${root}/photos`, { body: form })).body.items[0]
+  const negative = (await agent.post(`${root}/negatives`, { photoId: photo.id, process: 'cyanotype', size: { widthMm: 160, heightMm: 120 } })).body
+  const bench = (await agent.post(`${root}/benches`, { name: 'Blue on cotton', process: 'cyanotype' })).body
+  return { agent, records: { slug: studio.slug, photo: photo.id, negative: negative.id, bench: bench.id } as Records }
+}
+
+describe('accessibility', () => {
+  it('has a row for every page file', () => {
+    expect(Object.keys(screens).sort()).toEqual(globSync('pages/**/*.vue').sort())
+  })
+
+  for (const [file, screen] of Object.entries(screens)) {
+    it(`finds nothing on ${file}, in both themes, on a desk and a phone`, async () => {
+      const { agent, records } = await newRecords()
+      for (const theme of ['light', 'dim'] as const) {
+        for (const size of [desk, phone]) {
+          const { page, context } = await newPage({ size, theme, agent: screen.isPublic ? undefined : agent, reducedMotion: true })
+          await page.goto(screen.path(records))
+          await page.locator(screen.stands).filter({ visible: true }).first().waitFor()
+          await page.evaluate(axe.source)
+          const found = await page.evaluate(async () => {
+            const { violations } = await (window as unknown as { axe: typeof axe }).axe.run(document, { runOnly: ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice'] })
+            return violations.map(({ id, nodes }) => `${id}: ${nodes.map(node => node.html.slice(0, 160)).join(' | ')}`)
+          })
+          expect(found, `${theme}, ${size.width} px`).toEqual([])
+          await context.close()
+        }
+      }
+    })
+  }
+})
