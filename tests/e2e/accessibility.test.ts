@@ -1,5 +1,5 @@
 import axe from 'axe-core'
-import { globSync } from 'node:fs'
+import { readdirSync } from 'node:fs'
 import { readFile } from 'node:fs/promises'
 import { describe, expect, it } from 'vitest'
 import { desk, newPage, phone, photograph, useBrowser } from '../support/browser'
@@ -39,7 +39,7 @@ async function newRecords() {
 
 describe('accessibility', () => {
   it('has a row for every page file', () => {
-    expect(Object.keys(screens).sort()).toEqual(globSync('pages/**/*.vue').sort())
+    expect(Object.keys(screens).sort()).toEqual(readdirSync('pages', { recursive: true, encoding: 'utf8' }).filter(file => file.endsWith('.vue')).map(file => `pages/${file}`).sort())
   })
 
   for (const [file, screen] of Object.entries(screens)) {

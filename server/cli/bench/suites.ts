@@ -3,4 +3,5 @@ import type { Suite } from './suite'
 /** All suites by name; `npm run bench` without a name runs them in this order. */
 export const suites: Record<string, () => Promise<{ run: Suite }>> = {
   load: () => import('./load'),
+  preview: () => import('./preview'),
 }
