@@ -4,4 +4,5 @@ import type { Suite } from './suite'
 export const suites: Record<string, () => Promise<{ run: Suite }>> = {
   load: () => import('./load'),
   preview: () => import('./preview'),
+  render: () => import('./render'),
 }

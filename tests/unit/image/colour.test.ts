@@ -90,6 +90,20 @@ describe('profiles', () => {
   })
 })
 
+describe('what the engine does not compute itself', () => {
+  it('is converted by the library: a CMYK JPEG comes out at the L* of its conversion to sRGB, within 0.6', async () => {
+    const greys = [0, 64, 128, 192, 255]
+    const pixels = Buffer.from(greys.flatMap(grey => Array.from({ length: 256 }, () => [grey, grey, grey]).flat()))
+    const cmyk = await sharp(pixels, { raw: { width: 16, height: 16 * greys.length, channels: 3 } }).toColourspace('cmyk').jpeg({ quality: 100 }).toBuffer()
+    const converted = await sharp(cmyk).raw().toBuffer()
+    const { target } = await bench.film(bench.keep(cmyk), filmOrder(16, 16 * greys.length))
+    const tones = tonesFrom(bench.vipsSamples(target))
+    // one 8-bit step of sRGB is up to 0.5 L*
+    const middles = greys.map((_, i) => 16 * (16 * i + 8) + 8)
+    expectNear(middles.map(at => tones[at]! / 655.35), expected('srgb', middles.flatMap(at => [...converted.subarray(3 * at, 3 * at + 3)]), 255), 0.6)
+  })
+})
+
 describe('transparency', () => {
   it('lies over white, in light', async () => {
     const lightness = (y: number) => 116 * Math.cbrt(y) - 16 // CIE 15:2004, 8.2.1.1
