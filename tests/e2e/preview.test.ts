@@ -70,12 +70,10 @@ it('asks nothing of the server while a slider moves, and keeps the change afterw
 it('puts a change on top of one made elsewhere, and says so', async () => {
   const { agent, root, studio, negative } = await newNegative()
   const { page } = await newPage({ agent })
-  await page.goto(`/s/${studio.slug}/negatives/${negative.id}`)
-  const slider = page.getByRole('slider', { name: 'Contrast' }).first()
-  await slider.waitFor()
   // The page learns of the other change only by being refused: its stream of hints is held back.
   await page.route('**/events', route => route.abort())
-  await page.reload()
+  await page.goto(`/s/${studio.slug}/negatives/${negative.id}`)
+  const slider = page.getByRole('slider', { name: 'Contrast' }).first()
   await slider.waitFor()
   const other = await agent.patch(`${root}/negatives/${negative.id}`, { revision: negative.revision, name: 'Renamed elsewhere' })
   expect(other.status).toBe(200)

@@ -42,13 +42,21 @@ export async function newPage({ size = desk, theme = 'light', agent, reducedMoti
 }
 
 /** Reads what a canvas shows, also one that a worker draws: RGBA bytes. */
-export const canvasPixels = (page: Page, place: number) => page.evaluate(async (index) => {
-  const shown = document.querySelectorAll('canvas')[index]!
-  const copy = new OffscreenCanvas(shown.width, shown.height)
-  const context = copy.getContext('2d')!
-  context.drawImage(shown, 0, 0)
-  return { width: shown.width, height: shown.height, pixels: [...new Uint8Array(context.getImageData(0, 0, shown.width, shown.height).data)] }
-}, place)
+export async function canvasPixels(page: Page, place: number): Promise<{ width: number, height: number, pixels: Buffer }> {
+  const { width, height, url } = await page.evaluate(async (index) => {
+    const shown = document.querySelectorAll('canvas')[index]!
+    const copy = new OffscreenCanvas(shown.width, shown.height)
+    const context = copy.getContext('2d')!
+    context.drawImage(shown, 0, 0)
+    const { data } = context.getImageData(0, 0, shown.width, shown.height)
+    const reader = new FileReader()
+    const read = new Promise(resolve => reader.onload = resolve)
+    reader.readAsDataURL(new Blob([data]))
+    await read
+    return { width: shown.width, height: shown.height, url: reader.result as string }
+  }, place)
+  return { width, height, pixels: Buffer.from(url.slice(url.indexOf(',') + 1), 'base64') }
+}
 
 const flower = '/usr/share/libjxl-testdata/jxl/flower/flower.png'
 
