@@ -38,12 +38,20 @@ async function run(id: number, name: keyof ImageCalls, input: never): Promise<vo
     reply({ id, kind: 'done', result: await work[name](input, onProgress) })
   }
   catch (error) {
-    if (error instanceof ComputeError) return reply({ id, kind: 'failed', code: error.code, message: error.message, issues: error.issues })
-    const reason = error instanceof Error ? error.message : String(error)
-    reply({ id, kind: 'failed', code: 'image_child_failed', message: `The picture could not be worked on: ${reason}. Try again; if it happens again, try a smaller picture or film.` })
+    const { code, message, issues } = asRefusal(name, error)
+    reply({ id, kind: 'failed', code, message, issues })
   }
 }
 
+/** What a person may read. The system's own words hold paths: they go to the log. */
+function asRefusal(name: string, error: unknown): ComputeError {
+  if (error instanceof ComputeError) return error
+  console.error(JSON.stringify({ level: 'error', message: 'picture work failed', call: name, reason: error instanceof Error ? error.stack : String(error) }))
+  if ((error as NodeJS.ErrnoException).code === 'ENOSPC') return new ComputeError('disk_full', 'The service’s disk is full. Ask whoever runs it to make room, then try again.')
+  return new ComputeError('image_child_failed', 'The picture could not be worked on. Try again; if it happens again, try a smaller picture or film.')
+}
+
 process.on('message', ({ id, name, input }: { id: number, name: keyof ImageCalls, input: never }) => void run(id, name, input).then(releasePictures))
-// The parent's end is this program's end.
+// Ctrl-C in a terminal reaches this process too; the parent decides when work ends, and its end is this program's end.
+process.on('SIGINT', () => {})
 process.on('disconnect', () => process.exit(0))

@@ -15,10 +15,8 @@ import { toneRows } from '../sample/tone-rows'
 /** Share of a film's time that passes before its first row, for progress: decoding. */
 const decodingShare = 0.25
 
-interface Source { plane: LightPlane, orientation: number }
-
 /** Decodes and keeps only what the film needs. */
-async function openSource(path: string, order: FilmOrder): Promise<Source> {
+async function openSource(path: string, order: FilmOrder): Promise<{ plane: LightPlane, orientation: number }> {
   const picture = await decodePicture(path)
   return { plane: lightPlane(picture, mixWeights(order.tone.adjustments.mix)), orientation: picture.header.orientation }
 }
@@ -39,11 +37,13 @@ export async function makeFilm({ path, target, order, renderKey }: ImageCalls['f
     if (order.format === 'tiff') await writeTiff(file, rows, spec, onRows)
     else if (order.format === 'png') await writePng(file, rows, spec, onRows)
     else await writePdf(file, rows, { ...spec, pageMm: order.filmMm, title: order.marks.labelText || 'Film', renderKey }, onRows)
-    file.close()
-    return { bytes: file.position, sha256: FilmFile.sha256(target) }
   }
   catch (error) {
     rmSync(target, { force: true })
     throw error
   }
+  finally {
+    file.close()
+  }
+  return { bytes: file.position, sha256: FilmFile.sha256(target) }
 }
