@@ -42,12 +42,14 @@ export function readPastedTable(text: string): PastedTable {
 }
 
 /**
- * Every line is one number. `0,22` could be two: lines that all hold a comma are taken as two columns when the first
- * starts at 0, the clear film that every wedge has.
+ * Every line is one number. `0,22` could be two: lines that all hold a comma are taken as level and value when their first
+ * parts are all different, as levels are, and one of them is 0, the clear film that every wedge has.
  */
 function isOneColumn(lines: string[]): boolean {
   if (!lines.every(line => !/\s/.test(line) && parseDecimal(line) !== null)) return false
-  return !lines.every(line => line.includes(',')) || !lines.some(line => /^0+,/.test(line))
+  if (!lines.every(line => line.includes(','))) return true
+  const firstParts = lines.map(line => Number(line.split(',')[0]))
+  return !firstParts.includes(0) || new Set(firstParts).size < lines.length
 }
 
 function headerUnit(cells: string[]): PastedTable['unit'] | undefined {

@@ -34,6 +34,7 @@ describe('readPastedTable', () => {
 
   it('tells a column with decimal commas from two columns of whole numbers by the clear film at 0', () => {
     expect(readPastedTable('22,4\n30,1\n94,9').valuesOnly).toBe(true)
+    expect(readPastedTable('1,42\n0,90\n0,08').valuesOnly).toBe(true)
     expect(readPastedTable('0,22\n50,51\n100,95').rows).toEqual([{ ink: '0', value: '22' }, { ink: '50', value: '51' }, { ink: '100', value: '95' }])
   })
 

@@ -1,0 +1,76 @@
+import axe from 'axe-core'
+import { readFileSync } from 'node:fs'
+import type { Page } from 'playwright-core'
+import { beforeAll, describe, expect, it } from 'vitest'
+import { newPage, phone, photograph, useBrowser } from '../support/browser'
+import { newStudio } from '../support/studio'
+
+/** Screens with something on them and something open on them, as they are used: plots, tables, menus, dialogs, pictures. */
+interface Screen { path: (made: Made) => string, then?: (page: Page) => Promise<unknown> }
+const screens: Record<string, Screen> = {
+  'photos, a menu open': { path: () => 'photos', then: async (page) => {
+    await page.locator('.photo-grid img').first().waitFor()
+    await page.getByRole('button', { name: /^More for/ }).click()
+  } },
+  'a photo with its negative': { path: made => `photos/${made.photo}`, then: page => page.locator('.ruled img').first().waitFor() },
+  'benches': { path: () => 'benches', then: page => page.getByText('Blue on cotton').waitFor() },
+  'setting up a bench, the recipe open': { path: () => 'benches/new', then: page => page.locator('summary').first().click() },
+  'a bench with its plots': { path: made => `benches/${made.bench}`, then: page => page.locator('canvas').first().waitFor() },
+  'a curve as a table': { path: made => `benches/${made.bench}`, then: page => page.getByRole('button', { name: 'As a table' }).click() },
+  'a base exposure to enter': { path: made => `benches/${made.bench}`, then: page => page.getByRole('button', { name: 'Enter a new one' }).click() },
+  'a starter with its assumptions': { path: made => `benches/${made.starter}`, then: page => page.getByText('rests on assumptions').waitFor() },
+  'a thing on the shelf': { path: () => 'shelf', then: page => page.getByRole('button', { name: /^Change / }).first().click() },
+}
+
+type Made = Awaited<ReturnType<typeof furnish>>
+async function furnish() {
+  const { agent, root, studio } = await newStudio()
+  const form = new FormData()
+  form.append('file', new Blob([new Uint8Array(readFileSync(photograph(1200, 900)))], { type: 'image/jpeg' }), 'flower.jpg')
+  const photo = (await agent.call('POST', `${root}/photos`, { body: form })).body.items[0]
+  const paper = (await agent.post(`${root}/papers`, { name: 'Cotton rag, smooth', notes: 'Lot of spring.' })).body
+  const bench = (await agent.post(`${root}/benches`, { name: 'Blue on cotton', process: 'cyanotype', paperId: paper.id, baseExposure: { value: 260, unit: 's' } })).body
+  const values = Array.from({ length: 21 }, (_, i) => ({ level: i / 20, value: 22 + 73 * (i / 20) ** 1.3 }))
+  const reading = (await agent.post(`${root}/benches/${bench.id}/readings`, { unit: 'lightness', values })).body
+  const curve = (await agent.post(`${root}/benches/${bench.id}/curves`, { readingIds: [reading.id] })).body
+  await agent.post(`${root}/curves/${curve.id}/use`)
+  const starter = (await agent.post(`${root}/starter-benches`, { process: 'cyanotype' })).body
+  await agent.post(`${root}/negatives`, { photoId: photo.id, benchId: bench.id, size: { widthMm: 100, heightMm: 100 } })
+  return { agent, slug: studio.slug as string, photo: photo.id as string, bench: bench.id as string, starter: starter.id as string }
+}
+
+/** Counts the pixels of the screen that hold blue light. */
+async function bluePixels(page: Page): Promise<number> {
+  const picture = (await page.screenshot()).toString('base64')
+  return page.evaluate(async (base64) => {
+    const bitmap = await createImageBitmap(new Blob([Uint8Array.from(atob(base64), letter => letter.charCodeAt(0))], { type: 'image/png' }))
+    const context = new OffscreenCanvas(bitmap.width, bitmap.height).getContext('2d')!
+    context.drawImage(bitmap, 0, 0)
+    return context.getImageData(0, 0, bitmap.width, bitmap.height).data.filter((value, i) => i % 4 === 2 && value > 0).length
+  }, picture)
+}
+
+useBrowser()
+let made: Made
+beforeAll(async () => {
+  made = await furnish()
+})
+
+describe.each(['light', 'dim'] as const)('in the %s theme, on a phone', (theme) => {
+  it.each(Object.entries(screens))('%s: no finding, nothing wider than the screen, no blue in the dim', async (_, { path, then }) => {
+    const { page, context, elsewhere, errors } = await newPage({ agent: made.agent, size: phone, theme, reducedMotion: true })
+    await page.goto(`/s/${made.slug}/${path(made)}`)
+    await page.locator('#content h1').waitFor()
+    await then?.(page)
+    await page.evaluate(axe.source)
+    const found = await page.evaluate(async () => {
+      const { violations } = await (window as unknown as { axe: typeof axe }).axe.run()
+      return violations.flatMap(({ id, nodes }) => nodes.map(node => `${id}: ${node.html.slice(0, 160)}`))
+    })
+    expect(found).toEqual([])
+    expect(await page.evaluate(() => document.documentElement.scrollWidth - window.innerWidth)).toBeLessThanOrEqual(0)
+    if (theme === 'dim') expect(await bluePixels(page)).toBe(0)
+    expect([...elsewhere, ...errors]).toEqual([])
+    await context.close()
+  })
+})
