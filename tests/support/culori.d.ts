@@ -1,4 +1,9 @@
 /** culori carries no types; this is what the tests use of it. */
 declare module 'culori' {
-  export function converter(mode: 'lab'): (color: string | object) => { l: number, a: number, b: number } | undefined
+  interface Lab { l: number, a: number, b: number }
+  export function converter(mode: 'lab'): {
+    (color: { mode: 'rgb', r: number, g: number, b: number }): Lab
+    /** undefined for a text that names no colour */
+    (color: string): Lab | undefined
+  }
 }
