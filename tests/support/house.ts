@@ -2,6 +2,7 @@ import { spawn } from 'node:child_process'
 import { mkdtempSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
+import { setTimeout as sleep } from 'node:timers/promises'
 import pg from 'pg'
 import { inject, onTestFinished } from 'vitest'
 import { builtPrograms } from '../../server/cli/paths.mjs'
@@ -31,7 +32,13 @@ export async function newDatabase(kind: 'empty' | 'migrated'): Promise<string> {
     await client.connect()
     await client.query(text).finally(() => client.end())
   }
-  await once(`create database ${name} owner emulside_test template ${kind === 'empty' ? 'template1' : 'emulside_template'}`)
+  // PostgreSQL copies a template for one at a time.
+  const retried = async (text: string, tries = 20): Promise<void> => once(text).catch(async (error) => {
+    if (tries === 0 || error.code !== '55006') throw error
+    await sleep(100)
+    await retried(text, tries - 1)
+  })
+  await retried(`create database ${name} owner emulside_test template ${kind === 'empty' ? 'template1' : 'emulside_template'}`)
   onTestFinished(() => once(`drop database if exists ${name} with (force)`))
   const url = new URL(inject('databaseUrl'))
   url.pathname = name
