@@ -11,6 +11,15 @@ export function log(level: LogLevel, event: string, details: Record<string, unkn
   process.stdout.write(`${JSON.stringify(line, errorsAsText)}\n`)
 }
 
+/** What libraries say on the console becomes a log line too, cut short. */
+export function takeOverConsole(): void {
+  for (const [method, level] of [['log', 'info'], ['info', 'info'], ['warn', 'warn'], ['error', 'error']] as const) {
+    console[method] = (...words: unknown[]) => log(level, 'console', {
+      text: words.filter(word => typeof word === 'string').join(' ').split('\n')[0]!.slice(0, 200), error: words.find(word => word instanceof Error),
+    })
+  }
+}
+
 const processName = () => `${process.env.PROCESS_NAME ?? 'web'}-${process.pid}`
 
 /** A database driver's error message may quote values that people typed: of those only code and constraint are kept. */

@@ -1,6 +1,6 @@
-import { cpSync, existsSync } from 'node:fs'
+import { cpSync } from 'node:fs'
 import { join } from 'node:path'
-import { inData, root } from './paths.mjs'
+import { root } from './paths.mjs'
 
 /** Programs beside the web server, each bundled to one file: name → source. */
 const programs = {
@@ -13,13 +13,13 @@ const programs = {
   'image-child': 'server/image/child.ts',
 }
 
-export const developmentBundles = inData('build')
+/** Bundles of the sources as they are, for `npm run dev`, backup and restore. */
+export const developmentBundles = join(root, '.output/development')
 
 function settingsFor(folder) {
-  const present = Object.entries(programs).filter(([, source]) => existsSync(join(root, source)))
   return {
     absWorkingDir: root,
-    entryPoints: Object.fromEntries(present),
+    entryPoints: programs,
     outdir: folder,
     outExtension: { '.js': '.mjs' },
     bundle: true, platform: 'node', target: 'node20', format: 'esm', packages: 'external', sourcemap: 'linked', logLevel: 'warning',

@@ -1,13 +1,14 @@
 import { readSettings } from '../config'
 import { closeDatabase } from '../db/client'
 import { runWorker } from '../jobs/worker'
-import { log } from '../log'
+import { log, takeOverConsole } from '../log'
 
 process.env.PROCESS_NAME = 'worker'
 
 // The worker process: takes up waiting renders until it is told to stop.
 
 async function main(): Promise<void> {
+  takeOverConsole()
   const worker = await runWorker(readSettings(), (event, details) => log('info', event, details))
   log('info', 'worker.started')
   let stopping = false

@@ -1,8 +1,9 @@
-import { log } from '../log'
+import { log, takeOverConsole } from '../log'
 import { countRequest } from '../metrics'
 
 /** Gives every request an id, and logs and counts it when its answer has gone out. */
 export default defineNitroPlugin((nitro) => {
+  if (!import.meta.dev) takeOverConsole()
   nitro.hooks.hook('request', (event) => {
     const started = performance.now()
     const requestId = event.context.requestId = crypto.randomUUID()

@@ -8,7 +8,7 @@ import { Agent, newStudio } from '../support/studio'
 async function ownWeb(env: Record<string, string> = {}) {
   const web = await startWeb({ programs: builtPrograms, databaseUrl: await newDatabase('migrated'), storage: join(newFolder(), 'files'), env })
   onTestFinished(() => web.kill())
-  const lines = () => web.log().split('\n').filter(line => line.startsWith('{')).map(line => JSON.parse(line))
+  const lines = () => web.log().split('\n').filter(Boolean).map(line => JSON.parse(line))
   return { ...web, lines }
 }
 
