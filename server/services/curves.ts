@@ -7,7 +7,7 @@ import { ComputeError } from '#shared/errors'
 import type { Curve, CurveBrief, curveBody } from '#shared/schemas/curves'
 import { db, type Queryable, type Transaction } from '../db/client'
 import { curveReadings, curves, readings } from '../db/schema'
-import { hasRole, type StudioAccess } from './access'
+import type { StudioAccess } from './access'
 import { recordEvent } from './audit'
 import { findBench, lockBench } from './benches'
 import { bodyHashOf, createOnce, idFor } from './creation'
@@ -35,17 +35,6 @@ export async function curveOf(studio: StudioAccess, id: string): Promise<Curve> 
 
 export async function findCurve(on: Queryable, studioId: string, id: string): Promise<CurveRow | undefined> {
   return (await on.select().from(curves).where(and(eq(curves.studioId, studioId), eq(curves.id, id))))[0]
-}
-
-/**
- * The curve a negative is made with: the one named, else the bench's curve in use. Technicians and owners may try a draft;
- * members take curves in use only (403). Another bench's curve is not found; none in use is `no_curve`.
- */
-export async function requireCurveFor(on: Queryable, studio: StudioAccess, benchId: string, curveId?: string): Promise<CurveRow> {
-  const [curve] = await on.select().from(curves).where(and(eq(curves.studioId, studio.id), eq(curves.benchId, benchId), curveId ? eq(curves.id, curveId) : eq(curves.state, 'in-use')))
-  if (!curve) throw curveId ? new ComputeError('not_found', 'This bench has no such curve.') : new ComputeError('no_curve', 'This bench has no curve in use yet. Read a wedge and put a curve in use first.')
-  if (curve.state !== 'in-use' && !hasRole(studio.role, 'technician')) throw new ComputeError('role_too_low', 'This curve is not in use. Members print with curves in use; ask a technician of the studio.')
-  return curve
 }
 
 /** Fits a draft from readings of this bench. The fit runs in a child; the row is written after it, in one transaction. */
