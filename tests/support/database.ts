@@ -14,3 +14,6 @@ export async function withDatabase<T>(use: (sql: Sql) => Promise<T>): Promise<T>
     await client.end()
   }
 }
+
+/** One statement on the application's database. */
+export const sql: Sql = (text, values) => withDatabase(run => run(text, values))

@@ -1,0 +1,11 @@
+import { benchCases } from './routes/benches'
+import { curveCases } from './routes/curves'
+import { negativeCases } from './routes/negatives'
+import { peopleCases } from './routes/people'
+import { photoCases } from './routes/photos'
+import type { RouteCase } from './routes/route-case'
+import { serviceCases } from './routes/service'
+import { shelfCases } from './routes/shelf'
+
+/** Every handler of the service, each with a good call of it. What must be refused follows from the contract, or is named. */
+export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...shelfCases, ...benchCases, ...curveCases, ...photoCases, ...negativeCases]
