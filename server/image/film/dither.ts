@@ -4,22 +4,27 @@
  */
 export function makeDither(width: number, channels: number): (row: Uint16Array, to: Uint8Array) => void {
   const samples = width * channels
-  /** what each sample takes over from the row above, in 16-bit codes; rewritten for the next row behind the reading place */
-  const passed = new Float64Array(samples)
+  /**
+   * What each sample takes over from the row above, in 16-bit codes, after one pixel of room; rewritten for the next row
+   * behind the reading place. Whole numbers: every share is rounded and the last takes the rest, so that nothing is lost.
+   */
+  const passed = new Int16Array(samples + channels)
   return (row, to) => {
     for (let c = 0; c < channels; c++) {
       let carried = 0, belowLeft = 0, below = 0
       for (let i = c; i < samples; i += channels) {
-        const wanted = row[i]! + carried + passed[i]!
-        const code = wanted <= 0 ? 0 : wanted >= 65535 ? 255 : (wanted * (1 / 257) + 0.5) | 0
+        const wanted = (row[i]! + carried + passed[i + channels]!) | 0
+        // (w + 128) · 255 / 65536 is w / 257 + ½ within 0.002, and exact at whole steps
+        const code = wanted <= 0 ? 0 : wanted >= 65535 ? 255 : ((wanted + 128) * 255) >> 16
         to[i] = code
-        const error = wanted - 257 * code
-        carried = error * (7 / 16)
-        if (i >= channels) passed[i - channels] = belowLeft + error * (3 / 16)
-        belowLeft = below + error * (5 / 16)
-        below = error * (1 / 16)
+        const error = (wanted - ((code << 8) + code)) | 0
+        const right = (error * 7) >> 4, left = (error * 3) >> 4, straight = (error * 5) >> 4
+        carried = right
+        passed[i] = belowLeft + left
+        belowLeft = below + straight
+        below = error - right - left - straight
       }
-      passed[samples - channels + c] = belowLeft
+      passed[samples + c] = belowLeft
     }
   }
 }
