@@ -11,6 +11,8 @@ export interface ImageChildSettings {
   timeoutSeconds: number
   /** threads of libvips and of the file writer's compression */
   threads?: number
+  /** how far the child steps back before other processes of the machine, 0 … 19 */
+  niceness?: number
 }
 
 export interface CallOptions { onProgress?: (fraction: number) => void, signal?: AbortSignal }
@@ -139,11 +141,11 @@ export function openImageChild(settings: ImageChildSettings): ImageChild {
   }
 }
 
-/** On Linux the shell lowers its own address-space limit and then becomes the program. */
-function spawnLimited({ programPath, addressSpaceBytes, threads = 2 }: ImageChildSettings): ChildProcess {
+/** On Linux the shell lowers its own address-space limit and priority and then becomes the program. */
+function spawnLimited({ programPath, addressSpaceBytes, threads = 2, niceness = 0 }: ImageChildSettings): ChildProcess {
   const command = [process.execPath, '--disable-wasm-trap-handler', '--expose-gc', programPath]
   const [program, ...rest] = process.platform === 'linux'
-    ? ['/bin/sh', '-c', `ulimit -v ${Math.floor(addressSpaceBytes / 1024)} && exec "$@"`, 'sh', ...command]
+    ? ['/bin/sh', '-c', `ulimit -v ${Math.floor(addressSpaceBytes / 1024)} && exec nice -n ${niceness} "$@"`, 'sh', ...command]
     : command
   return spawn(program!, rest, {
     stdio: ['ignore', 'inherit', 'inherit', 'ipc'],

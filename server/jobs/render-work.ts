@@ -1,6 +1,6 @@
 import { setTimeout as sleep } from 'node:timers/promises'
 import { ComputeError } from '#shared/errors'
-import { imageChild } from '../services/image-child'
+import { filmChild } from '../services/image-child'
 import { storage } from '../services/storage'
 import { storageKeys } from '../storage'
 import { claimRender, commitRender, failRender, LeaseLost, maxTakeUps, releaseRender, renewLease, type RenderLease } from './render-leases'
@@ -46,7 +46,7 @@ async function makeFilm(lease: RenderLease, settings: RenderWorkSettings, stoppi
   let progress = 0
   const renewing = keepLease(lease, settings, work, () => progress)
   try {
-    const made = await imageChild().call('film', {
+    const made = await filmChild().call('film', {
       path: storage().pathOf(storageKeys.original(studioId, photoId)), target: file.path, order, renderKey,
     }, { signal: work.signal, onProgress: fraction => progress = fraction })
     await commitRender(lease, made, () => file.keep(storageKeys.film(studioId, renderKey, format)))

@@ -67,5 +67,17 @@ function labelText({ negative, bench, curve }: NegativeParts): string {
 
 /** Names a film file by everything that decides its bytes: equal keys, equal bytes. */
 export function renderKey(photoSha256: string, order: FilmOrder): string {
-  return createHash('sha256').update(canonicalJson({ original: photoSha256, order, engine: engineVersion })).digest('hex')
+  const tone = { ...order.tone, response: hashOfTable(order.tone.response) }
+  return sha256(canonicalJson({ original: photoSha256, order: { ...order, tone }, engine: engineVersion }))
+}
+
+const sha256 = (text: string): string => createHash('sha256').update(text).digest('hex')
+
+/** A curve's table is large, and a list of negatives asks for it many times. */
+const tableHashes = new WeakMap<number[], string>()
+
+function hashOfTable(response: number[]): string {
+  const hash = tableHashes.get(response) ?? sha256(canonicalJson(response))
+  tableHashes.set(response, hash)
+  return hash
 }
