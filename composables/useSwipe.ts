@@ -26,5 +26,5 @@ export function useSwipe(screen: Readonly<Ref<HTMLElement | null>>, state: Ref<T
   /** A finger takes over from the page's own scrolling. */
   const takeOver = () => target = null
 
-  return { follow, goTo, takeOver }
+  return { follow, goTo, takeOver, isSwiped }
 }
