@@ -5,4 +5,5 @@ export const suites: Record<string, () => Promise<{ run: Suite }>> = {
   load: () => import('./load'),
   preview: () => import('./preview'),
   render: () => import('./render'),
+  reading: () => import('./reading'),
 }
