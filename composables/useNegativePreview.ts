@@ -2,7 +2,7 @@ import { contract } from '#build/client-contract'
 import type { Curve } from '#shared/schemas/curves'
 import type { Photo } from '#shared/schemas/photos'
 import type { useNegativeEditor } from '~/composables/useNegativeEditor'
-import type { PreviewOrder } from '~/preview/engine'
+import type { PreviewOrder } from '~/composables/preview/engine'
 import { innerOf } from '~/utils/crop-choice'
 
 /**

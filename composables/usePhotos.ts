@@ -53,10 +53,3 @@ export function usePhotos({ bin = false } = {}) {
 
   return { photos, negativesOf, reload, takeIn, putIntoBin, restore, rename, send, thumbnailOf, picturesOf }
 }
-
-/** Small pictures of a negative's three states; the revision is in the address, so that a changed negative shows anew. */
-export function negativePictures(studio: string, negative: Negative, width = 320) {
-  const address = (state: 'photo' | 'film' | 'print') =>
-    `${addressOf(contract.negativeForecast, { studio, negative: negative.id }, { width, state })}&r=${negative.revision}`
-  return { photo: address('photo'), film: address('film'), print: address('print') }
-}

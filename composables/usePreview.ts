@@ -1,5 +1,5 @@
-import type { PreviewOrder, Reading, Summary } from '~/preview/engine'
-import type { PreviewAnswer, PreviewPart, PreviewRequest } from '~/preview/messages'
+import type { PreviewOrder, Reading, Summary } from '~/composables/preview/engine'
+import type { PreviewAnswer, PreviewPart, PreviewRequest } from '~/composables/preview/messages'
 import type { TriptychState } from '~/utils/triptych'
 
 /**
@@ -10,7 +10,7 @@ export function usePreview() {
   const summary = shallowRef<Summary | null>(null)
   const pictureEnds = shallowRef<[number, number]>([0, 1])
   const reading = shallowRef<Reading | null>(null)
-  const worker = new Worker(new URL('../preview/preview.worker.ts', import.meta.url), { type: 'module' })
+  const worker = new Worker(new URL('./preview/preview.worker.ts', import.meta.url), { type: 'module' })
   const send = (request: PreviewRequest, moved: Transferable[] = []) => worker.postMessage(request, moved)
 
   worker.onmessage = ({ data }: MessageEvent<PreviewAnswer>) => {

@@ -7,7 +7,7 @@ import { runAside, say, Stop } from './run.mjs'
 
 const sources = [
   'app.vue', 'error.vue', 'nuxt.config.ts', 'tailwind.config.ts', 'package-lock.json',
-  'assets', 'components', 'composables', 'layouts', 'middleware', 'modules', 'pages', 'plugins', 'preview', 'public', 'server', 'shared', 'stores', 'utils',
+  'assets', 'components', 'composables', 'layouts', 'middleware', 'modules', 'pages', 'plugins', 'public', 'server', 'shared', 'stores', 'utils',
 ]
 const marker = join(builtPrograms, 'built-from.json')
 

@@ -37,6 +37,7 @@ export async function newPage({ size = desk, theme = 'light', agent, reducedMoti
   const errors: string[] = []
   context.on('request', request => !request.url().startsWith(address) && !/^(data|blob):/.test(request.url()) && elsewhere.push(request.url()))
   page.on('pageerror', error => errors.push(error.message))
+  page.on('response', answer => answer.status() >= 400 && answer.request().resourceType() === 'image' && errors.push(`${answer.status()} ${answer.url()}`))
   page.setDefaultTimeout(45_000)
   return { page, context, elsewhere, errors }
 }

@@ -6,7 +6,7 @@ import { describe, expect, it } from 'vitest'
 // Rules of the house that a reader can't see at a glance. Their patterns are tried on made-up lines as well.
 
 const root = fileURLToPath(new URL('../..', import.meta.url))
-const folders = ['components', 'composables', 'layouts', 'middleware', 'modules', 'pages', 'plugins', 'preview', 'server', 'shared', 'stores', 'utils']
+const folders = ['components', 'composables', 'layouts', 'middleware', 'modules', 'pages', 'plugins', 'server', 'shared', 'stores', 'utils']
   .filter(folder => existsSync(join(root, folder)))
 
 function sources(folder: string): { path: string, imports: string[] }[] {

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest'
-import { codeRange, PreviewEngine, type PreviewOrder } from '../../../preview/engine'
-import { starterResponse } from '../../../shared/calibration/starter'
+import { codeRange, PreviewEngine, type PreviewOrder } from '../../../../composables/preview/engine'
+import { starterResponse } from '../../../../shared/calibration/starter'
 
 const order = (patch: Partial<PreviewOrder> = {}): PreviewOrder => ({
   adjustments: { mix: { red: 1, green: 1, blue: 1 }, blackPoint: 0, whitePoint: 1, midtone: 0, contrast: 0 },

@@ -1,4 +1,4 @@
-import type { TriptychState } from '../utils/triptych'
+import type { TriptychState } from '../../utils/triptych'
 import type { PreviewOrder, Reading, Summary } from './engine'
 
 /** The whole picture, or a part of it at the film's own pixels. Figures always come from the whole. */

@@ -1,4 +1,4 @@
-import type { TriptychState } from '../utils/triptych'
+import type { TriptychState } from '../../utils/triptych'
 import { PreviewEngine } from './engine'
 import type { PreviewAnswer, PreviewPart, PreviewRequest } from './messages'
 
