@@ -32,9 +32,15 @@ export async function receiveFiles(event: H3Event, rules: ReceivingRules): Promi
   const request = event.node.req
   const form = openForm(request, rules)
   const arriving: Promise<Arrival>[] = []
+  let before: Promise<unknown> = Promise.resolve()
   form.on('file', (field, stream, { filename }) => {
     const fileName = filename ?? ''
-    arriving.push(field === rules.field ? receiveOne(stream, fileName, rules) : refuseOne(stream, fileName, rules.field))
+    // The stream may fail while it waits for its turn, or while its temporary file is still being opened.
+    stream.on('error', () => {})
+    // One after the other, as they were sent: where room ends, it ends for the later ones.
+    const arrival = before.then(() => field === rules.field ? receiveOne(stream, fileName, rules) : refuseOne(stream, fileName, rules.field))
+    before = arrival.catch(() => {})
+    arriving.push(arrival)
   })
   let tooMany = false
   form.on('filesLimit', () => tooMany = true)
@@ -95,8 +101,6 @@ function feed(request: IncomingMessage, form: busboy.Busboy): Promise<void> {
 type FileStream = Readable & { truncated?: boolean }
 
 async function receiveOne(stream: FileStream, fileName: string, rules: ReceivingRules): Promise<Arrival> {
-  // The stream may fail while the temporary file is still being opened.
-  stream.once('error', () => {})
   const id = rules.newId()
   const file = await rules.openTemporary(id)
   const hash = createHash('sha256')
@@ -133,7 +137,7 @@ async function receiveOne(stream: FileStream, fileName: string, rules: Receiving
 }
 
 async function refuseOne(stream: FileStream, fileName: string, wantedField: string): Promise<Arrival> {
-  stream.on('error', () => {}).resume()
+  stream.resume()
   return refused(fileName, 'invalid_input', `Send each picture as a part named \`${wantedField}\`.`)
 }
 
