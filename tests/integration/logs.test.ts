@@ -20,7 +20,9 @@ describe('logs', () => {
     expect(answer.status).toBe(401)
     const requestId = answer.headers.get('x-request-id')
     await expect.poll(() => web.lines().find(line => line.requestId === requestId)).toMatchObject({ event: 'request', method: 'POST', route: '/api/auth/login', status: 401 })
-    for (const typed of ['somebody@elsewhere.example', 'not the right password', 'emu_secret', '127.0.0.1:']) expect(JSON.stringify(web.lines())).not.toContain(typed)
+    for (const typed of ['somebody@elsewhere.example', 'not the right password', 'emu_secret']) expect(JSON.stringify(web.lines())).not.toContain(typed)
+    const aboutRequests = web.lines().filter(line => line.requestId !== undefined)
+    expect(JSON.stringify(aboutRequests)).not.toContain('127.0.0.1')
   })
 })
 
