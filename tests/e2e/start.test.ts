@@ -28,7 +28,10 @@ describe('Start on a phone', () => {
     await decide(() => page.getByTestId('photo-files').setInputFiles(photograph()))
     await decide(async () => {
       await page.getByRole('button', { name: 'Change the bench or process' }).click()
-      await page.getByRole('button', { name: 'Van Dyke brown' }).click()
+      const dialog = page.getByRole('dialog')
+      // It comes from below: seen whole, at the foot of the screen.
+      expect(await dialog.evaluate(sheet => [Math.round(sheet.getBoundingClientRect().bottom), getComputedStyle(sheet).opacity])).toEqual([phone.height, '1'])
+      await dialog.getByRole('button', { name: 'Van Dyke brown' }).click()
     })
     await decide(() => page.getByText('130 × 98').click())
     await page.getByText('uncalibrated').first().waitFor()
