@@ -3,9 +3,12 @@ import { isotonic } from './isotonic'
 /** Half width of a pointwise 95 % band in standard deviations of the draws: the normal quantile. */
 const halfWidth = 1.96
 
-/** Pointwise 95 % band about a curve from draws at the same positions; never falling, never inside the curve. */
-export function bandsOf(curve: Float64Array, draws: readonly Float64Array[]): { low: Float64Array, high: Float64Array } {
-  const deviations = curve.map((_, i) => deviationAt(draws, i))
+/**
+ * Pointwise 95 % band about a curve from draws at the same positions; never falling, never inside the curve. `spread` widens
+ * the draws' standard deviation.
+ */
+export function bandsOf(curve: Float64Array, draws: readonly Float64Array[], spread = 1): { low: Float64Array, high: Float64Array } {
+  const deviations = curve.map((_, i) => spread * deviationAt(draws, i))
   const low = isotonic(curve.map((value, i) => Math.max(0, value - halfWidth * deviations[i]!)))
   const high = isotonic(curve.map((value, i) => Math.min(100, value + halfWidth * deviations[i]!)))
   return { low: low.map((v, i) => Math.min(v, curve[i]!)), high: high.map((v, i) => Math.max(v, curve[i]!)) }

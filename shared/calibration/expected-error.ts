@@ -15,13 +15,13 @@ const stride = 4
 
 /**
  * What errors to expect, max |ΔL*| over all tones. `curve`: of the curve itself, from the fit's draws. `nextPrint`: of the
- * next print made with it; to the curve's error comes √(1 + 1/prints) times the print-to-print spread, a stated prior of 0.02
- * log H in exposure and 1 % in coating (both normal), since the prints read had theirs too.
+ * next print made with it; to the curve's error comes `spread` times the print-to-print spread, a stated prior of 0.02 log H in
+ * exposure and 1 % in coating (both normal). `spread` is √(1 + 1/prints), since the prints read had theirs too; 1 where
+ * the draws hold that already.
  */
-export function expectedError(curve: Float64Array, draws: readonly Float64Array[], prints: number): ExpectedError {
+export function expectedError(curve: Float64Array, draws: readonly Float64Array[], spread: number): ExpectedError {
   const random = seededRandom(2)
   const shift = shiftOf(curve)
-  const spread = Math.sqrt(1 + 1 / prints)
   const ofCurve = draws.map(draw => greatest(curve, draw, () => 0))
   const ofNext = draws.map((draw) => {
     const [exposure, coating] = [random.normal() * spread * assumedExposureSpread, random.normal() * spread * assumedCoatingSpread]
@@ -40,6 +40,13 @@ function shiftOf(curve: Float64Array): (i: number, exposure: number, coating: nu
     const moved = assumedSlope * net * (1 - net / range) * exposure + net * coating
     return lightnessFromDensity(Math.min(6, Math.max(-1, densities[i]! + moved))) - curve[i]!
   }
+}
+
+/** Standard deviations of lightness, L*, by the stated spread at the tones where each shows most. */
+export function shiftDeviations(curve: Float64Array): { exposure: number, coating: number } {
+  const shift = shiftOf(curve)
+  const most = (exposure: number, coating: number): number => curve.reduce((max, _, i) => Math.max(max, Math.abs(shift(i, exposure, coating))), 0)
+  return { exposure: most(assumedExposureSpread, 0), coating: most(0, assumedCoatingSpread) }
 }
 
 function greatest(curve: Float64Array, draw: Float64Array, shift: (i: number) => number): number {

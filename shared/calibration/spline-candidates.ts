@@ -29,7 +29,7 @@ export interface SplineCandidate {
  */
 export function splineCandidates(bases: readonly Float64Array[], y: Float64Array): SplineCandidate[] {
   const columns = bases[0]!.length / y.length
-  const penalty = differencePenalty(columns, penaltyOrder)
+  const penalty = { matrix: differencePenalty(columns, penaltyOrder), splines: columns, order: penaltyOrder }
   return bases.flatMap((basis, index) => {
     const equations = normalEquations(basis, y, columns)
     return smoothings.map(smoothing => ({ basis: index, smoothing, ...penalisedFit(equations, penalty, smoothing) }))
@@ -39,21 +39,32 @@ export function splineCandidates(bases: readonly Float64Array[], y: Float64Array
 /** BᵀB, Bᵀy, yᵀy and the number of rows. */
 export interface NormalEquations { gram: Float64Array, moments: Float64Array, square: number, rows: number }
 
+/** A penalty and how many of the columns it sees: the rest, beyond `splines`, are left unpenalised. */
+export interface Penalty { matrix: Float64Array, splines: number, order: number }
+
 /** The penalised least-squares fit α = (BᵀB + λ·P)⁻¹Bᵀy and what `SplineCandidate` keeps of it. */
-export function penalisedFit({ gram, moments, square, rows }: NormalEquations, penalty: Float64Array, smoothing: number): Omit<SplineCandidate, 'basis' | 'smoothing'> {
+export function penalisedFit({ gram, moments, square, rows }: NormalEquations, { matrix, splines, order }: Penalty, smoothing: number): Omit<SplineCandidate, 'basis' | 'smoothing'> {
   const columns = moments.length
   const factor = new Float64Array(gram.length)
-  for (let i = 0; i < factor.length; i++) factor[i] = gram[i]! + smoothing * penalty[i]!
+  for (let i = 0; i < factor.length; i++) factor[i] = gram[i]! + smoothing * matrix[i]!
   const ridge = 1e-9 * trace(gram, columns) / columns
   for (let i = 0; i < columns; i++) factor[i * columns + i]! += ridge
   factorise(factor, columns)
   const coefficients = solveUpper(factor, columns, solveLower(factor, columns, moments.slice()))
   let explained = 0
   for (let i = 0; i < columns; i++) explained += moments[i]! * coefficients[i]!
-  const freedom = Math.max(1, rows - penaltyOrder)
+  const freedom = Math.max(1, rows - order - (columns - splines))
   const variance = Math.max(square - explained, freedom * leastDeviation ** 2) / freedom
-  const criterion = freedom * Math.log(variance) + logDeterminant(factor, columns) - (columns - penaltyOrder) * Math.log(smoothing)
+  const criterion = freedom * Math.log(variance) + logDeterminant(factor, columns) - (splines - order) * Math.log(smoothing)
   return { criterion, coefficients, variance, factor }
+}
+
+/** The smoothing weight of least criterion, for a design whose first `splines` columns are penalised by `matrix`. */
+export function bestFit(design: Float64Array, y: Float64Array, matrix: Float64Array, splines: number): SplineCandidate {
+  const equations = normalEquations(design, y, design.length / y.length)
+  return smoothings
+    .map(smoothing => ({ basis: 0, smoothing, ...penalisedFit(equations, { matrix, splines, order: penaltyOrder }, smoothing) }))
+    .reduce((a, b) => b.criterion < a.criterion ? b : a)
 }
 
 /** The normal equations of a basis (rows × columns, by rows) and values. */

@@ -35,7 +35,7 @@ describe('B-splines', () => {
     const count = input.segments + 3
     const basis = cubicBasis(input.x, count)
     for (const [smoothing, fit] of Object.entries(expected.fit)) {
-      const { coefficients } = penalisedFit(normalEquations(basis, Float64Array.from(input.y), count), differencePenalty(count, input.penalty_order), Number(smoothing))
+      const { coefficients } = penalisedFit(normalEquations(basis, Float64Array.from(input.y), count), { matrix: differencePenalty(count, input.penalty_order), splines: count, order: input.penalty_order }, Number(smoothing))
       expect(greatestDifference(combine(basis, coefficients), fit), `λ ${smoothing}`).toBeLessThanOrEqual(tolerance)
     }
   })
