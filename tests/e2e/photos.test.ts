@@ -60,6 +60,7 @@ describe('photos', () => {
     const { agent, studio, root } = await newStudio()
     const { page, context } = await newPage({ agent })
     await page.goto(`/s/${studio.slug}/photos`)
+    await page.getByRole('button', { name: 'Choose photos' }).first().waitFor()
     const pasted = (await photograph('pasted.jpg', 300)).buffer.toString('base64')
     await page.evaluate((base64) => {
       const transfer = new DataTransfer()
