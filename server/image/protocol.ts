@@ -1,4 +1,5 @@
 import type { ResponseFit, ResponsePoint } from '#shared/calibration/response-fit'
+import type { WedgePlan } from '#shared/calibration/wedge/plan'
 import type { Aim } from '#shared/schemas/curves'
 import type { Adjustments, FilmFormat } from '#shared/schemas/negatives'
 
@@ -43,6 +44,21 @@ export interface FilmOrder {
   marks: { ruler: boolean, label: boolean, labelText: string }
   /** exact, for the PDF's boxes */
   filmMm: { width: number, height: number }
+}
+
+/** All that decides a wedge's film file, with the engine's version. `tones` are the curve's, where it is printed through one. */
+export interface WedgeFilmOrder {
+  format: FilmFormat
+  plan: WedgePlan
+  code: string
+  page: { widthMm: number, heightMm: number }
+  /** 1025 levels of the curve that the wedge is printed through, by tone */
+  throughCurve: number[] | null
+  pixelsPerInch: number
+  mirror: boolean
+  inkColor: string
+  /** bench, date, path */
+  lines: string[]
 }
 
 /** Calls to an image child; paths are absolute. Each answers or fails with a ComputeError's code. */

@@ -38,6 +38,7 @@ async function settle(lease: RenderLease, error: unknown): Promise<void> {
 
 async function makeFilm(lease: RenderLease, settings: RenderWorkSettings, stopping: AbortSignal): Promise<void> {
   const { studioId, photoId, renderKey, format, order } = lease.row
+  if (photoId === null || !('geometry' in order)) throw new ComputeError('unavailable', 'This film is not a negative’s.')
   const file = await storage().temporary(`film_${settings.owner}`)
   const work = new AbortController()
   const onStop = () => work.abort(new WorkerStops('The worker is stopping.'))

@@ -122,7 +122,7 @@ async function readingIdsOf(on: Queryable, studioId: string, curveIds: string[])
 
 const briefColumns = {
   id: curves.id, benchId: curves.benchId, version: curves.version, state: curves.state, aim: curves.aim, calibrated: curves.calibrated, assumptions: curves.assumptions,
-  expectedError: curves.expectedError, warnings: curves.warnings, notes: curves.notes, createdAt: curves.createdAt, inUseSince: curves.inUseSince,
+  expectedError: curves.expectedError, basis: curves.basis, warnings: curves.warnings, notes: curves.notes, createdAt: curves.createdAt, inUseSince: curves.inUseSince,
 }
 type BriefRow = Pick<CurveRow, keyof typeof briefColumns> & { blackLightness: number, whiteLightness: number }
 
@@ -130,10 +130,10 @@ const brief = ({ createdAt, inUseSince, ...row }: BriefRow, readingIds: string[]
   ({ ...row, readingIds, createdAt: createdAt.toISOString(), inUseSince: inUseSince?.toISOString() ?? null })
 
 async function view(on: Queryable, row: CurveRow): Promise<Curve> {
-  const { studioId, bodyHash: _, createdBy: __, response, responseLow, responseHigh, ...fields } = row
+  const { studioId, bodyHash: _, createdBy: __, response, responseLow, responseHigh, responseLowOfAll: ___, responseHighOfAll: ____, colourPath, ...fields } = row
   const readingIds = (await readingIdsOf(on, studioId, [row.id])).get(row.id)
   return {
     ...brief({ ...fields, blackLightness: response[0]!, whiteLightness: response.at(-1)! }, readingIds),
-    points: curvePoints(response, responseLow, responseHigh, row.aim), response,
+    points: curvePoints(response, responseLow, responseHigh, row.aim), response, colourPath,
   }
 }

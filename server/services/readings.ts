@@ -20,7 +20,7 @@ export async function listReadings(studio: StudioAccess, benchId: string, page: 
   requireFound(await findBench(db(), studio.id, benchId))
   const { after, order, take } = keyset(readings.id, page)
   const rows = await db().select().from(readings).where(and(eq(readings.studioId, studio.id), eq(readings.benchId, benchId), after)).orderBy(order).limit(take)
-  return toPage(rows, page, shown)
+  return toPage(rows, page, row => shown(row))
 }
 
 export async function readingOf(studio: StudioAccess, id: string): Promise<Reading> {
@@ -69,5 +69,7 @@ async function find(on: Queryable, studioId: string, id: string): Promise<Readin
   return (await on.select().from(readings).where(and(eq(readings.studioId, studioId), eq(readings.id, id))))[0]
 }
 
-const shown = ({ id, benchId, state, quality, unit, zero, paperLightness, patches, warnings, createdAt }: ReadingRow): Reading =>
-  ({ id, benchId, state, quality, unit, zero, paperLightness, corners: null, patches, warnings, createdAt: createdAt.toISOString() })
+const shown = ({ id, benchId, state, quality, unit, zero, paperLightness, corners, patches, warnings, createdAt, wedgeId, wedgePrintId, scannerId, scannerProfileId, progress, errorCode, errorMessage, evidence }: ReadingRow, printNumber: number | null = null): Reading => ({
+  id, benchId, state, quality, unit, zero, paperLightness, corners, patches, warnings, createdAt: createdAt.toISOString(),
+  wedgeId, wedgePrintId, printNumber, scannerId, scannerProfileId, progress, error: errorCode === null ? null : { code: errorCode, message: errorMessage ?? '' }, evidence,
+})

@@ -31,11 +31,30 @@ export const readingPatch = z.object({
   lab: z.tuple([z.number(), z.number(), z.number()]).nullable(),
   deviation: z.number().nullable(), used: z.boolean(),
 })
+const place = z.object({ lightness: z.number(), lab: z.tuple([z.number(), z.number(), z.number()]), deviation: z.number() }).nullable()
+/** What a scan shows beside its patches. */
+export const readingEvidence = z.object({
+  /** upright, after the file's own orientation tag */
+  picture: z.object({ width: z.number().int(), height: z.number().int() }),
+  code: z.string().nullable(), pixelsPerInch: z.number(), turnedDegrees: z.number(), mirrored: z.boolean(), inverted: z.boolean(), markersSeen: z.number().int(),
+  /** width of printed edges, 10 to 90 % */
+  edgeWidthMm: z.number(), glareShare: z.number(),
+  /** beside each marker */
+  references: z.array(z.object({ fullInk: place, clear: place })),
+  diagnostics: z.object({ foil: place, bare: place, uncoated: place }),
+  /** four corners of each patch’s read part, pixels of the upright picture, x and y in turn */
+  cells: z.array(z.array(z.number())),
+})
+export type ReadingEvidence = z.infer<typeof readingEvidence>
 export const reading = z.object({
   id, benchId: id, state: workState, quality: z.enum(['scan', 'phone', 'measured']),
   unit: z.enum(readingUnits).nullable(), zero: z.enum(zeros).nullable(), paperLightness: z.number().nullable(),
   corners: z.array(z.tuple([z.number(), z.number()])).nullable(),
   patches: z.array(readingPatch), warnings: z.array(warning), createdAt: instant,
+  /** of a scan; null for typed values */
+  wedgeId: id.nullable(), wedgePrintId: id.nullable(), printNumber: z.number().int().nullable(), scannerId: id.nullable(), scannerProfileId: id.nullable(),
+  progress: fraction, error: warning.nullable(),
+  evidence: readingEvidence.nullable(),
 })
 export type Reading = z.infer<typeof reading>
 
@@ -50,12 +69,17 @@ export const curve = z.object({
   points: z.array(curvePoint),
   /** the reading channel's value at 1025 equal steps of ink level, clear film first: what the page's preview works from */
   response: z.array(z.number()),
-  expectedError: z.object({ nextPrint: errorFigures, curve: errorFigures }).nullable(),
+  /** `nextPrintWithOneMore`: what the next print would do if one more wedge print were read */
+  expectedError: z.object({ nextPrint: errorFigures, curve: errorFigures, nextPrintWithOneMore: errorFigures.optional() }).nullable(),
+  /** of a fit with positions: prints pooled, and what parted them and their patches, L* */
+  basis: z.object({ prints: z.number().int(), patchesUsed: z.number().int(), patchesDropped: z.number().int(), noise: z.number().nullable(), printSpread: z.number().nullable(), reversal: z.object({ level: fraction, rise: z.number(), significance: z.number() }).nullable() }).nullable(),
+  /** L*, a*, b* of the print from paper white to deepest tone, from scanned patches */
+  colourPath: z.array(z.tuple([z.number(), z.number(), z.number()])).nullable(),
   warnings: z.array(warning), notes: z.string(), createdAt: instant, inUseSince: instant.nullable(),
 })
 export type Curve = z.infer<typeof curve>
 /** In lists the long tables are left out. */
-export const curveBrief = curve.omit({ points: true, response: true })
+export const curveBrief = curve.omit({ points: true, response: true, colourPath: true })
 export type CurveBrief = z.infer<typeof curveBrief>
 
 export const curveBody = z.strictObject({

@@ -2,13 +2,15 @@ import { sql } from 'drizzle-orm'
 import { bigint, boolean, check, foreignKey, index, integer, jsonb, pgTable, primaryKey, real, text, uniqueIndex, uuid, varchar } from 'drizzle-orm/pg-core'
 import type { z } from 'zod'
 import { aims, workStates } from '../../../shared/schemas/curves'
-import type { FilmOrder } from '../../image/protocol'
+import type { FilmOrder, WedgeFilmOrder } from '../../image/protocol'
 import { limits } from '../../../shared/schemas/limits'
 import type { crop, margin, marks, Adjustments } from '../../../shared/schemas/negatives'
 import { filmFormats } from '../../../shared/schemas/negatives'
-import { benches, curves } from './benches'
+import { benches } from './benches'
 import { createdAt, instant, revision, studioId } from './columns'
+import { curves } from './curves'
 import { studios, users } from './people'
+import { wedges } from './wedges'
 
 export const photos = pgTable('photos', {
   studioId: studioId().references(() => studios.id),
@@ -77,13 +79,15 @@ export const negatives = pgTable('negatives', {
 export const renders = pgTable('renders', {
   studioId: studioId(),
   id: uuid().notNull(),
-  photoId: uuid().notNull(),
+  /** what is on the film: a negative's photo, or a wedge */
+  photoId: uuid(),
+  wedgeId: uuid(),
   renderKey: varchar({ length: 64 }).notNull(),
   format: varchar({ length: 8, enum: filmFormats }).notNull(),
   state: varchar({ length: 10, enum: workStates }).notNull(),
   progress: real().notNull().default(0),
   /** the resolved instruction for the image engine */
-  order: jsonb('film_order').$type<FilmOrder>().notNull(),
+  order: jsonb('film_order').$type<FilmOrder | WedgeFilmOrder>().notNull(),
   leaseOwner: varchar({ length: 80 }),
   leaseUntil: instant(),
   /** counts how often the work was taken up; checked when it is handed in */
@@ -103,5 +107,7 @@ export const renders = pgTable('renders', {
   primaryKey({ columns: [t.studioId, t.id] }),
   uniqueIndex('renders_key').on(t.studioId, t.renderKey),
   foreignKey({ columns: [t.studioId, t.photoId], foreignColumns: [photos.studioId, photos.id] }),
+  foreignKey({ columns: [t.studioId, t.wedgeId], foreignColumns: [wedges.studioId, wedges.id] }),
+  check('renders_subject', sql`num_nonnulls(${t.photoId}, ${t.wedgeId}) = 1`),
   index('renders_open').on(t.createdAt).where(sql`${t.state} in ('waiting', 'making')`),
 ])
