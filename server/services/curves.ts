@@ -4,9 +4,9 @@ import type { z } from 'zod'
 import { curvePoints } from '#shared/calibration/curve'
 import type { ResponseFit } from '#shared/calibration/response-fit'
 import { ComputeError } from '#shared/errors'
-import type { Curve, CurveBrief, curveBody } from '#shared/schemas/curves'
+import type { Curve, CurveBrief, curveBody, curvePatch } from '#shared/schemas/curves'
 import { db, type Queryable, type Transaction } from '../db/client'
-import { curveReadings, curves, readings } from '../db/schema'
+import { curveReadings, curves, readings, users } from '../db/schema'
 import type { StudioAccess } from './access'
 import { recordEvent } from './audit'
 import { findBench, lockBench } from './benches'
@@ -14,7 +14,7 @@ import { bodyHashOf, createOnce, idFor } from './creation'
 import { hint } from './hints'
 import { imageChild } from './image-child'
 import { keyset, toPage, type Page } from './paging'
-import { requireFound } from './revisions'
+import { requireCurrent, requireFound } from './revisions'
 
 export type CurveRow = typeof curves.$inferSelect
 type Body = z.infer<typeof curveBody>
@@ -23,8 +23,8 @@ export async function listCurves(studio: StudioAccess, benchId: string, page: Pa
   requireFound(await findBench(db(), studio.id, benchId))
   const { after, order, take } = keyset(curves.id, page)
   const rows = await db().select({
-    ...briefColumns, blackLightness: sql<number>`(${curves.response}->>0)::float8`, whiteLightness: sql<number>`(${curves.response}->>1024)::float8`,
-  }).from(curves).where(and(eq(curves.studioId, studio.id), eq(curves.benchId, benchId), after)).orderBy(order).limit(take)
+    ...briefColumns, createdBy: users.name, blackLightness: sql<number>`(${curves.response}->>0)::float8`, whiteLightness: sql<number>`(${curves.response}->>1024)::float8`,
+  }).from(curves).leftJoin(users, eq(users.id, curves.createdBy)).where(and(eq(curves.studioId, studio.id), eq(curves.benchId, benchId), after)).orderBy(order).limit(take)
   const readingsOf = await readingIdsOf(db(), studio.id, rows.map(row => row.id))
   return toPage(rows, page, row => brief(row, readingsOf.get(row.id)))
 }
@@ -71,6 +71,17 @@ async function insertDraft(tx: Transaction, studio: StudioAccess, benchId: strin
   await tx.insert(curveReadings).values(body.readingIds.map(readingId => ({ studioId: studio.id, benchId, curveId: row.id, readingId })))
   await tell(tx, studio, row, 'created')
   return row
+}
+
+/** What is noted about a curve may change; its figures never do. */
+export async function changeCurve(studio: StudioAccess, id: string, { revision, notes }: z.infer<typeof curvePatch>): Promise<Curve> {
+  return await db().transaction(async (tx) => {
+    requireCurrent(await lockCurve(tx, studio, id), revision)
+    const [row] = await tx.update(curves).set({ notes, revision: sql`${curves.revision} + 1` })
+      .where(and(eq(curves.studioId, studio.id), eq(curves.id, id))).returning()
+    await tell(tx, studio, row!, 'changed')
+    return await view(tx, row!)
+  })
 }
 
 /** Puts a curve in use and retires the one before. All changes of a bench's curves wait for one another at its row. */
@@ -122,18 +133,20 @@ async function readingIdsOf(on: Queryable, studioId: string, curveIds: string[])
 
 const briefColumns = {
   id: curves.id, benchId: curves.benchId, version: curves.version, state: curves.state, aim: curves.aim, calibrated: curves.calibrated, assumptions: curves.assumptions,
-  expectedError: curves.expectedError, basis: curves.basis, warnings: curves.warnings, notes: curves.notes, createdAt: curves.createdAt, inUseSince: curves.inUseSince,
+  expectedError: curves.expectedError, basis: curves.basis, warnings: curves.warnings, notes: curves.notes, createdAt: curves.createdAt, inUseSince: curves.inUseSince, revision: curves.revision,
 }
-type BriefRow = Pick<CurveRow, keyof typeof briefColumns> & { blackLightness: number, whiteLightness: number }
+type BriefRow = Pick<CurveRow, keyof typeof briefColumns> & { createdBy: string | null, blackLightness: number, whiteLightness: number }
 
 const brief = ({ createdAt, inUseSince, ...row }: BriefRow, readingIds: string[] = []): CurveBrief =>
   ({ ...row, readingIds, createdAt: createdAt.toISOString(), inUseSince: inUseSince?.toISOString() ?? null })
 
 async function view(on: Queryable, row: CurveRow): Promise<Curve> {
-  const { studioId, bodyHash: _, createdBy: __, response, responseLow, responseHigh, responseLowOfAll: ___, responseHighOfAll: ____, colourPath, ...fields } = row
+  const { studioId, bodyHash: _, createdBy: personId, response, responseLow, responseHigh, responseLowOfAll, responseHighOfAll, colourPath, ...fields } = row
   const readingIds = (await readingIdsOf(on, studioId, [row.id])).get(row.id)
+  const [person] = personId ? await on.select({ name: users.name }).from(users).where(eq(users.id, personId)) : []
   return {
-    ...brief({ ...fields, blackLightness: response[0]!, whiteLightness: response.at(-1)! }, readingIds),
+    ...brief({ ...fields, createdBy: person?.name ?? null, blackLightness: response[0]!, whiteLightness: response.at(-1)! }, readingIds),
     points: curvePoints(response, responseLow, responseHigh, row.aim), response, colourPath,
+    bandOfAll: responseLowOfAll && responseHighOfAll && { low: responseLowOfAll, high: responseHighOfAll },
   }
 }

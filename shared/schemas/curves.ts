@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { endpoint } from './endpoint'
-import { fraction, id, instant, listOf, listQuery, newId, text } from './primitives'
+import { fraction, id, instant, listOf, listQuery, newId, revision, text } from './primitives'
 
 export const aims = ['even-lightness', 'keep-middle-tones', 'even-density'] as const
 export const aim = z.enum(aims)
@@ -75,11 +75,14 @@ export const curve = z.object({
   basis: z.object({ prints: z.number().int(), patchesUsed: z.number().int(), patchesDropped: z.number().int(), noise: z.number().nullable(), printSpread: z.number().nullable(), reversal: z.object({ level: fraction, rise: z.number(), significance: z.number() }).nullable() }).nullable(),
   /** L*, a*, b* of the print from paper white to deepest tone, from scanned patches */
   colourPath: z.array(z.tuple([z.number(), z.number(), z.number()])).nullable(),
-  warnings: z.array(warning), notes: z.string(), createdAt: instant, inUseSince: instant.nullable(),
+  /** L* at the same 1025 levels: a 95 % band that holds for all of them at once; the points' band holds for each by itself */
+  bandOfAll: z.object({ low: z.array(z.number()), high: z.array(z.number()) }).nullable(),
+  /** `createdBy`: the name of who fitted it */
+  warnings: z.array(warning), notes: z.string(), createdBy: z.string().nullable(), createdAt: instant, inUseSince: instant.nullable(), revision,
 })
 export type Curve = z.infer<typeof curve>
 /** In lists the long tables are left out. */
-export const curveBrief = curve.omit({ points: true, response: true, colourPath: true })
+export const curveBrief = curve.omit({ points: true, response: true, colourPath: true, bandOfAll: true })
 export type CurveBrief = z.infer<typeof curveBrief>
 
 export const curveBody = z.strictObject({
@@ -87,6 +90,8 @@ export const curveBody = z.strictObject({
   readingIds: z.array(id).min(1).max(50).refine(ids => new Set(ids).size === ids.length, 'Name each reading once.'),
   aim: aim.optional(), notes: text.optional(),
 })
+
+export const curvePatch = z.strictObject({ revision, notes: text })
 
 const bench = '/api/studios/:studio/benches/:bench' as const
 const curves = '/api/studios/:studio/curves/:curve' as const
@@ -105,6 +110,7 @@ export const curveEndpoints = {
     body: curveBody, answers: { 200: curve, 201: curve },
   }),
   curve: endpoint({ method: 'GET', path: curves, access: 'member', summary: 'One curve with its points.', answers: { 200: curve } }),
+  changeCurve: endpoint({ method: 'PATCH', path: curves, access: 'technician', summary: 'Note something about a curve; its figures never change.', body: curvePatch, answers: { 200: curve } }),
   useCurve: endpoint({ method: 'POST', path: `${curves}/use`, access: 'technician', summary: 'Put a curve in use; the one before is retired.', answers: { 200: curve } }),
   retireCurve: endpoint({ method: 'POST', path: `${curves}/retire`, access: 'technician', summary: 'Retire a curve.', answers: { 200: curve } }),
   curveTable: endpoint({ method: 'GET', path: `${curves}/table`, access: 'member', summary: 'The curve as 1025 named rows.', query: z.strictObject({ format: z.enum(['csv', 'json', 'cgats']).default('csv') }), answers: { 200: ['text/csv', 'application/json', 'text/plain'] } }),

@@ -135,6 +135,14 @@ describe('a curve', () => {
     expect(states.map(row => row.state).sort()).toEqual(['in-use', 'retired', 'retired'])
   })
 
+  it('carries who fitted it, and notes that the last reader may change', async () => {
+    const curve = await newCurve()
+    expect(curve).toMatchObject({ notes: '', revision: 1, createdBy: 'Ines Marlow' })
+    const change = (notes: string, revision: number) => studio.agent.patch(`${studio.root}/curves/${curve.id}`, { notes, revision })
+    expect((await change('New batch; looked dry.', 1)).body).toEqual({ ...curve, notes: 'New batch; looked dry.', revision: 2 })
+    expect((await change('Another note', 1)).status).toBe(409)
+  })
+
   it('can be seen by members, who change nothing', async () => {
     const curve = await newCurve()
     const { agent } = await newPersonIn(studio.ids.studio, 'member')

@@ -3,7 +3,7 @@ import { boolean, check, foreignKey, integer, jsonb, pgTable, primaryKey, text, 
 import type { Curve, Warning } from '../../../shared/schemas/curves'
 import { aims, curveStates } from '../../../shared/schemas/curves'
 import { benches } from './benches'
-import { createdAt, instant, studioId } from './columns'
+import { createdAt, instant, revision, studioId } from './columns'
 import { users } from './people'
 
 export const curves = pgTable('curves', {
@@ -33,6 +33,8 @@ export const curves = pgTable('curves', {
   createdBy: uuid().references(() => users.id),
   createdAt: createdAt(),
   inUseSince: instant(),
+  /** of its notes */
+  revision: revision(),
 }, t => [
   primaryKey({ columns: [t.studioId, t.id] }),
   unique('curves_of_bench').on(t.studioId, t.benchId, t.id),

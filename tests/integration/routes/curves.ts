@@ -36,6 +36,10 @@ export const curveCases: RouteCase[] = [
     ],
   },
   { file: `${curve}/index.get.ts`, row: 'curve', good: async world => ({ params: { curve: (await world.newCurve()).curve } }) },
+  {
+    file: `${curve}/index.patch.ts`, row: 'changeCurve', good: async world => ({ params: { curve: (await world.newCurve()).curve }, json: { notes: 'After the new batch.', revision: 1 } }),
+    bad: [{ why: 'an old revision', call: () => ({ json: { notes: 'Mine', revision: 7 }, status: 409, code: 'stale_revision' }) }],
+  },
   { file: `${curve}/use.post.ts`, row: 'useCurve', good: async world => ({ params: { curve: (await world.newCurve()).curve } }) },
   { file: `${curve}/retire.post.ts`, row: 'retireCurve', good: async world => ({ params: { curve: (await world.newCurve()).curve } }) },
   {

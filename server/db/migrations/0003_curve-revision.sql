@@ -1,0 +1,1 @@
+ALTER TABLE "curves" ADD COLUMN "revision" integer DEFAULT 1 NOT NULL;
