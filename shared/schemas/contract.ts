@@ -1,5 +1,6 @@
 import { z } from 'zod'
 import { benchEndpoints } from './benches'
+import { walkEndpoints } from './calibration'
 import { curveEndpoints } from './curves'
 import { endpoint, type Endpoint } from './endpoint'
 import { negativeEndpoints } from './negatives'
@@ -16,5 +17,5 @@ const serviceEndpoints = {
 
 /** Every route of the service, by name. Validation, types and the OpenAPI document all come from here. */
 export const contract = {
-  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...photoEndpoints, ...negativeEndpoints,
+  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...walkEndpoints, ...photoEndpoints, ...negativeEndpoints,
 } satisfies Record<string, Endpoint>
