@@ -4,7 +4,7 @@ import type { z } from 'zod'
 import { ComputeError } from '#shared/errors'
 import { combination, type Bench, type benchBody, type benchCopy, type benchPatch } from '#shared/schemas/benches'
 import { db, type Queryable, type Transaction } from '../db/client'
-import { baseExposures, benches, curves, readings } from '../db/schema'
+import { baseExposures, benches, curves, readings, wedgePrints } from '../db/schema'
 import type { StudioAccess } from './access'
 import { recordEvent } from './audit'
 import { addBaseExposure } from './base-exposures'
@@ -95,18 +95,19 @@ async function update(tx: Transaction, studio: StudioAccess, { id }: BenchRow, v
   return row!
 }
 
-/** A combination that has been read, or that is the service's own, gives one set of tones and keeps it. */
+/** A combination that has been printed or read, or that is the service's own, gives one set of tones and keeps it. */
 async function requireChangeable(tx: Transaction, bench: BenchRow, changes: Record<string, unknown>): Promise<void> {
   const before = combinationOf(bench)
   const changed = Object.entries(changes).filter(([field, value]) => value !== undefined && bodyHashOf({ value }) !== bodyHashOf({ value: before[field as keyof typeof before] }))
-  if (!changed.length || !(bench.starter || await hasReadings(tx, bench))) return
+  if (!changed.length || !(bench.starter || await isPrinted(tx, bench))) return
   throw new ComputeError('combination_fixed',
-    `${bench.starter ? 'This bench is the service’s own, so its combination stays.' : 'This bench has readings, and they hold for its combination only.'} Make a copy of it (POST …/benches/${bench.id}/copy) with the change; the readings stay with this one.`,
+    `${bench.starter ? 'This bench is the service’s own, so its combination stays.' : 'This bench has wedge prints or readings, and they hold for its combination only.'} Make a copy of it (POST …/benches/${bench.id}/copy) with the change; they stay with this one.`,
     changed.map(([path]) => ({ path, message: 'Change this in a copy.' })))
 }
 
-async function hasReadings(on: Queryable, { studioId, id }: BenchRow): Promise<boolean> {
-  return (await on.select({ id: readings.id }).from(readings).where(and(eq(readings.studioId, studioId), eq(readings.benchId, id))).limit(1)).length > 0
+async function isPrinted(on: Queryable, { studioId, id }: BenchRow): Promise<boolean> {
+  const rowsOf = (table: typeof readings | typeof wedgePrints) => on.select({ id: table.id }).from(table).where(and(eq(table.studioId, studioId), eq(table.benchId, id))).limit(1)
+  return (await rowsOf(readings)).length > 0 || (await rowsOf(wedgePrints)).length > 0
 }
 
 const combinationOf = (row: BenchRow) => Object.fromEntries(Object.keys(combination).map(field => [field, row[field as keyof typeof combination]])) as Pick<BenchRow, keyof typeof combination>

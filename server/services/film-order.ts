@@ -4,7 +4,7 @@ import { largestCrop, straightenedFrame } from '#shared/sheet/crop'
 import { filmPixels, pixelsFromMm } from '#shared/sheet/pixels'
 import { formatSize } from '#shared/sheet/sizes'
 import type { NegativeSettings } from '../db/schema'
-import type { FilmOrder } from '../image/protocol'
+import type { FilmOrder, WedgeFilmOrder } from '../image/protocol'
 import { engineVersion } from '../image/version'
 import { canonicalJson } from './creation'
 import type { NegativeParts } from './negative-parts'
@@ -69,6 +69,12 @@ function labelText({ negative, bench, curve }: NegativeParts): string {
 export function renderKey(photoSha256: string, order: FilmOrder): string {
   const tone = { ...order.tone, response: hashOfTable(order.tone.response) }
   return sha256(canonicalJson({ original: photoSha256, order: { ...order, tone }, engine: engineVersion }))
+}
+
+/** The same for a wedge's film, which is made from its record alone. */
+export function wedgeRenderKey(order: WedgeFilmOrder): string {
+  const { throughCurve } = order
+  return sha256(canonicalJson({ wedge: { ...order, throughCurve: throughCurve && hashOfTable(throughCurve) }, engine: engineVersion }))
 }
 
 const sha256 = (text: string): string => createHash('sha256').update(text).digest('hex')

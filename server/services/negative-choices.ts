@@ -1,12 +1,10 @@
 import { and, eq } from 'drizzle-orm'
 import { ComputeError } from '#shared/errors'
 import type { Process } from '#shared/schemas/benches'
-import { limits } from '#shared/schemas/limits'
 import { db } from '../db/client'
-import { curves, type NegativeSettings } from '../db/schema'
+import { curves } from '../db/schema'
 import { hasRole, type StudioAccess } from './access'
 import { findBench, type BenchRow } from './benches'
-import { filmSize } from './film-order'
 import { requirePhoto, type PhotoRow } from './photos'
 import { starterBench } from './starter-benches'
 
@@ -39,16 +37,3 @@ export async function chooseCurve(studio: StudioAccess, benchId: string, wanted:
   if (curve.state !== 'in-use' && !hasRole(studio.role, 'technician')) throw new ComputeError('role_too_low', 'Members make negatives with the curve in use. Ask a technician to put this one in use.')
   return curve
 }
-
-/** Throws `film_too_large` with the limit and what would fit. */
-export function requireFilmFits(settings: NegativeSettings): void {
-  const { widthPixels, heightPixels } = filmSize(settings)
-  const pixels = widthPixels * heightPixels
-  if (pixels <= limits.filmMaxPixels) return
-  const fitting = Math.floor(settings.pixelsPerInch * Math.sqrt(limits.filmMaxPixels / pixels))
-  throw new ComputeError('film_too_large',
-    `This film would have ${millions(pixels)} million pixels (${widthPixels} × ${heightPixels}); at most ${millions(limits.filmMaxPixels)} million can be made. ${fitting >= limits.pixelsPerInchMin ? `At this size ${fitting} pixels per inch fit.` : 'Make it smaller.'}`,
-    [{ path: 'pixelsPerInch', message: `At most ${Math.max(fitting, limits.pixelsPerInchMin)} at this size.` }])
-}
-
-const millions = (pixels: number): string => (pixels / 1e6).toFixed(pixels < 1e9 ? 1 : 0).replace(/\.0$/, '')

@@ -7,9 +7,10 @@ import { negatives, type NegativeSettings } from '../db/schema'
 import type { StudioAccess } from './access'
 import { recordEvent } from './audit'
 import { bodyHashOf, createOnce, idFor } from './creation'
+import { requireFilmFits } from './film-limits'
 import { filmOrder, filmSize, renderKey, resolveCrop } from './film-order'
 import { hint } from './hints'
-import { benchForNegative, chooseCurve, photoForNegative, requireFilmFits } from './negative-choices'
+import { benchForNegative, chooseCurve, photoForNegative } from './negative-choices'
 import { readParts, requireParts, seenBy, type NegativeParts, type NegativeRow } from './negative-parts'
 import { negativeWarnings } from './negative-warnings'
 import { keyset, toPage, type Page } from './paging'
@@ -38,7 +39,7 @@ export async function createNegative(studio: StudioAccess, body: z.infer<typeof 
     const bench = await benchForNegative(studio, { benchId, process })
     const curve = await chooseCurve(studio, bench.id, curveId ?? 'in-use')
     const resolved: NegativeSettings = { ...settings, crop: crop ?? null, mirror: mirror ?? bench.mirror }
-    requireFilmFits(resolved)
+    requireFilmFits(filmSize(resolved), resolved.pixelsPerInch)
     return db().transaction(async (tx) => {
       const [row] = await tx.insert(negatives).values({
         studioId: studio.id, id, bodyHash, name: name ?? photo.name, photoId, benchId: bench.id, curveId: curve.id, aim: aim ?? curve.aim, settings: resolved, createdBy: studio.personId,
@@ -59,7 +60,7 @@ export async function changeNegative(studio: StudioAccess, id: string, patch: z.
   const wantedCurve = curveId ?? (movesTo ? 'in-use' : undefined)
   const curve = wantedCurve === undefined ? undefined : await chooseCurve(studio, movesTo?.id ?? negative.benchId, wantedCurve)
   const settings = { ...negative.settings, ...(movesTo ? { mirror: movesTo.mirror } : {}), ...withoutUndefined(changes) }
-  requireFilmFits(settings)
+  requireFilmFits(filmSize(settings), settings.pixelsPerInch)
   await db().transaction(async (tx) => {
     const [row] = await tx.update(negatives).set({
       name, settings, benchId: movesTo?.id, curveId: curve?.id, aim: await nextAim(studio, negative, aim, curve?.aim), revision: sql`${negatives.revision} + 1`,
@@ -95,7 +96,7 @@ async function tell(on: Queryable, row: NegativeRow, verb: string): Promise<void
 /** What the worker is asked for when somebody wants this negative's film. */
 export function filmRequest(parts: NegativeParts, format: typeof filmFormats[number], requestId?: string): FilmRequest {
   const order = filmOrder(parts, format)
-  return { studioId: parts.negative.studioId, photoId: parts.photo.id, key: renderKey(parts.photo.sha256, order), order, requestId }
+  return { studioId: parts.negative.studioId, of: { photoId: parts.photo.id }, key: renderKey(parts.photo.sha256, order), order, requestId }
 }
 
 const show = async (parts: NegativeParts): Promise<Negative> => (await showAll([parts]))[0]!

@@ -5,7 +5,7 @@ import { ComputeError, errorCodes, type ErrorCode } from '#shared/errors'
 import type { FilmFormat, render } from '#shared/schemas/negatives'
 import { db, type Queryable, type Transaction } from '../db/client'
 import { renders } from '../db/schema'
-import type { FilmOrder } from '../image/protocol'
+import type { FilmOrder, WedgeFilmOrder } from '../image/protocol'
 import { sendJob } from '../jobs/queue'
 import { storageKeys } from '../storage'
 import { hint } from './hints'
@@ -15,7 +15,7 @@ export type RenderRow = typeof renders.$inferSelect
 export type Render = z.infer<typeof render>
 
 /** A film file as it is asked for: everything that decides its bytes, and the key that follows from it. */
-export interface FilmRequest { studioId: string, photoId: string, key: string, order: FilmOrder, requestId?: string }
+export interface FilmRequest { studioId: string, of: { photoId: string } | { wedgeId: string }, key: string, order: FilmOrder | WedgeFilmOrder, requestId?: string }
 
 export const showRender = ({ id, format, state, progress, bytes, sha256, errorCode, errorMessage }: RenderRow): Render =>
   ({ id, format, state, progress, bytes, sha256, error: errorCode === null ? null : { code: errorCode, message: errorMessage ?? '' } })
@@ -33,7 +33,7 @@ export async function rendersByKey(studioId: string, keys: string[]): Promise<Ma
 export async function requestRender(film: FilmRequest): Promise<RenderRow> {
   return db().transaction(async (tx) => {
     const [fresh] = await tx.insert(renders).values({
-      studioId: film.studioId, id: uuidv7(), photoId: film.photoId, renderKey: film.key,
+      studioId: film.studioId, id: uuidv7(), ...film.of, renderKey: film.key,
       format: film.order.format, order: film.order, state: 'waiting', requestId: film.requestId?.slice(0, 64),
     }).onConflictDoNothing({ target: [renders.studioId, renders.renderKey] }).returning()
     if (fresh) return enqueue(tx, fresh)

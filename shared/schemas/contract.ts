@@ -7,6 +7,7 @@ import { negativeEndpoints } from './negatives'
 import { peopleEndpoints } from './people'
 import { photoEndpoints } from './photos'
 import { shelfEndpoints } from './shelf'
+import { wedgeEndpoints } from './wedges'
 
 const serviceEndpoints = {
   version: endpoint({ method: 'GET', path: '/api', access: 'public', summary: 'Version and build.', answers: { 200: z.object({ version: z.string(), build: z.string() }) } }),
@@ -15,7 +16,9 @@ const serviceEndpoints = {
   ready: endpoint({ method: 'GET', path: '/api/health/ready', access: 'public', summary: 'Database and storage answer too.', answers: { 200: z.object({ status: z.literal('ok') }) } }),
 }
 
+const { wedgeFile: _, wedgePreview: __, ...wedgeRows } = wedgeEndpoints
+
 /** Every route of the service, by name. Validation, types and the OpenAPI document all come from here. */
 export const contract = {
-  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...walkEndpoints, ...photoEndpoints, ...negativeEndpoints,
+  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...walkEndpoints, ...photoEndpoints, ...negativeEndpoints, ...wedgeRows,
 } satisfies Record<string, Endpoint>

@@ -34,7 +34,7 @@ export function layOutFrame(fieldWidthMm: number, fieldHeightMm: number): Frame 
   const yRulerFromMm = 42
   const yRulerMm = Math.floor((heightMm - 8 - yRulerFromMm) / 10) * 10
   return {
-    widthMm, heightMm, field, islands,
+    widthMm, heightMm, field, islands, grounds: [],
     markers: [...cornerMarkers(widthMm, heightMm), ...borderMarkers(widthMm, heightMm, left)],
     identity: { pad: rect(0, 9, 24, 28), symbol: rect(2, 13, 20), moduleCount: 21 },
     rulers: [

@@ -21,9 +21,13 @@ export interface Ruler { axis: 'x' | 'y', place: RectMm, lengthMm: number }
 /** A place for text, drawn by whoever has fonts; `ink` says whether the letters are full ink or clear. */
 export interface PageLabel { id: string, place: RectMm, ink: 'full' | 'clear', text: string | null }
 
+/** An even area, painted before everything else: full ink, or clear again inside of it. */
+export interface Ground { place: RectMm, ink: 'full' | 'clear' }
+
 /** Where a wedge's parts stand on its film page. Everything is as the print reads; the film file is this page mirrored. */
 export interface WedgePage {
-  kind: 'scattered' | 'numbered'
+  /** `scattered`: the patches adjoin, row by row; `numbered` and `guide`: they stand apart. */
+  kind: 'scattered' | 'numbered' | 'guide'
   widthMm: number
   heightMm: number
   /** The rectangle that holds all patches. */
@@ -32,6 +36,8 @@ export interface WedgePage {
   rows: number
   /** The patches in the wedge's order, whole; their inner part is read. */
   patches: RectMm[]
+  /** Bars, lines and pads around the patches, in the order they are painted. */
+  grounds: Ground[]
   markers: PageMarker[]
   islands: Island[]
   /** The code: `symbol` holds the 21 × 21 modules, `pad` also the quiet zone of full ink. */
@@ -61,3 +67,13 @@ export const innerRect = (r: RectMm, share: number): RectMm => rect(
 
 /** Centre of a rectangle, mm. */
 export const centreOf = (r: RectMm): [number, number] => [r.xMm + r.widthMm / 2, r.yMm + r.heightMm / 2]
+
+/** Size of a label's letters as a share of its place's height: room for what reaches below the line. */
+const letterShare = 0.82
+const mmPerPoint = 25.4 / 72
+
+/** Height of the place that letters of so many points stand in, mm. */
+export const labelPlaceMm = (points: number): number => points * mmPerPoint / letterShare
+
+/** Letters' size in points of 1/72 inch for a label's place. */
+export const labelPoints = ({ heightMm }: RectMm): number => heightMm * letterShare / mmPerPoint

@@ -22,6 +22,7 @@ export function paintWedge(wedge: WedgePage, levels: ArrayLike<number>, modules:
   if (levels.length !== page.patches.length) throw new ComputeError('invalid_input', `This page has ${page.patches.length} patches, not ${levels.length}.`)
   const [widthPx, heightPx] = [pixelsFromMm(page.widthMm, pixelsPerInch), pixelsFromMm(page.heightMm, pixelsPerInch)]
   const raster: LevelRaster = { widthPx, heightPx, pixelsPerInch, codes: new Uint8Array(widthPx * heightPx) }
+  for (const { place, ink } of page.grounds) fill(raster, place, ink === 'full' ? fullInk : 0)
   page.patches.forEach((patch, i) => fill(raster, patch, Math.round(fullInk * levels[i]!)))
   for (const { pad, clear } of page.islands) {
     fill(raster, pad, fullInk)

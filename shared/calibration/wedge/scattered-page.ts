@@ -1,5 +1,6 @@
 import { ComputeError } from '../../errors'
 import { bandsMm, layOutFrame } from './frame'
+import type { WedgeGrid } from '../wedge-layout'
 import type { RectMm, WedgePage } from './page'
 import { rect } from './page'
 
@@ -36,3 +37,6 @@ export function gridForSheet(widthMm: number, heightMm: number): ScatteredGrid {
   if (!fits) throw new ComputeError('invalid_input', `The smallest wedge takes 144 × 110 mm of film; ${widthMm} × ${heightMm} mm is too small for it.`)
   return fits
 }
+
+/** The name that plans call a grid by. */
+export const gridName = ({ columns, rows }: ScatteredGrid): WedgeGrid => `${columns}x${rows}` as WedgeGrid

@@ -15,7 +15,7 @@ export function snapWedgePage(page: WedgePage, pixelsPerInch: number): WedgePage
   return {
     ...page, pixelsPerInch,
     widthMm: snapped(page.widthMm), heightMm: snapped(page.heightMm),
-    field: snap(page.field), patches: page.patches.map(snap), writeIn: snap(page.writeIn),
+    field: snap(page.field), patches: page.patches.map(snap), grounds: page.grounds.map(g => ({ ...g, place: snap(g.place) })), writeIn: snap(page.writeIn),
     markers: page.markers.map(m => ({ id: m.id, place: snap(m.place), fullInk: snap(m.fullInk), clear: snap(m.clear) })),
     islands: page.islands.map(i => ({ pad: snap(i.pad), clear: snap(i.clear) })),
     identity: { ...page.identity, pad: snap(page.identity.pad), symbol: snap(page.identity.symbol) },

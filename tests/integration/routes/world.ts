@@ -23,6 +23,12 @@ export async function makeWorld() {
     newPaper: () => make('papers', { name: 'Cold-pressed cotton' }),
     newBench: () => make('benches', { name: 'Window bench', process: 'cyanotype' }),
     newReading: (bench: string) => make(`benches/${bench}/readings`, { unit: 'lightness', values: wedgeValues }),
+    async newWedge() {
+      return make(`benches/${await this.newBench()}/wedges`, { page: { widthMm: 210, heightMm: 297 } })
+    },
+    async newWedgePrint() {
+      return make(`wedges/${await this.newWedge()}/prints`, {})
+    },
     async newCurve() {
       const bench = await this.newBench()
       return { bench, curve: await make(`benches/${bench}/curves`, { readingIds: [await this.newReading(bench)] }) }
