@@ -54,6 +54,11 @@ export function useBench(id: string) {
     await reload()
   }
 
+  async function note({ id: curveId, revision }: Pick<Curve, 'id' | 'revision'>, notes: string) {
+    const changed = await call(contract.changeCurve, { params: curveAddress(curveId), body: { notes, revision } })
+    if (shownCurveId.value === changed.id) curve.value = changed
+  }
+
   async function change(body: z.input<typeof benchPatch>) {
     bench.value = await call(contract.changeBench, { params, body })
   }
@@ -76,5 +81,5 @@ export function useBench(id: string) {
     return await answer.json()
   }
 
-  return { bench, curve, shownCurveId, readings, curves, error, reload, fit, use, retire, change, archive, keepReading, importReading }
+  return { bench, curve, shownCurveId, readings, curves, error, reload, fit, use, retire, note, change, archive, keepReading, importReading }
 }

@@ -2,7 +2,7 @@ import type { Curve, Reading } from '#shared/schemas/curves'
 import { densityFromLightness } from '#shared/tone/density'
 
 export interface PlotPoint { x: number, y: number }
-export type ChartCurve = Pick<Curve, 'points' | 'response'>
+export type ChartCurve = Pick<Curve, 'points' | 'response'> & Partial<Pick<Curve, 'bandOfAll'>>
 
 /** The bench's response: print lightness (y) against ink in per cent (x). */
 export const responseLine = (curve: ChartCurve): PlotPoint[] => curve.response.map((y, i) => ({ x: i / (curve.response.length - 1) * 100, y }))
@@ -28,6 +28,13 @@ export function responseBand(curve: ChartCurve): Band {
   }
 }
 
+/** The 95 % band that holds for all ink levels at once, where the fit gives one. */
+export function wideBand({ bandOfAll }: ChartCurve): Band | undefined {
+  if (!bandOfAll) return undefined
+  const edge = (values: number[]) => values.map((y, i) => ({ x: i / (values.length - 1) * 100, y }))
+  return { lower: edge(bandOfAll.low), upper: edge(bandOfAll.high) }
+}
+
 /** Every patch that was read: ink in per cent and print lightness. */
 export const measuredPoints = (readings: readonly Pick<Reading, 'patches'>[]): PlotPoint[] =>
   readings.flatMap(reading => reading.patches)
@@ -50,15 +57,19 @@ export function valueAt(line: readonly PlotPoint[], x: number): number {
   return b.x === a.x ? a.y : a.y + (b.y - a.y) * (x - a.x) / (b.x - a.x)
 }
 
-/** What is left over: measured less curve in L*, with the band about the curve at every 2 % of ink. */
-export function leftOver(curve: ChartCurve, measured: readonly PlotPoint[]): { points: PlotPoint[], band: Band } {
+/** A band, or a line as its one edge, less the curve at every 2 % of ink, in L*. */
+export function aboutLine(curve: ChartCurve, band: Band): Band {
   const line = responseLine(curve)
-  const band = responseBand(curve)
-  const inks = Array.from({ length: 51 }, (_, i) => i * 2)
-  const aboutZero = (edge: PlotPoint[]) => inks.map(x => ({ x, y: valueAt(edge, x) - valueAt(line, x) }))
+  const less = (edge: PlotPoint[]) => edge.length === 0 ? [] : Array.from({ length: 51 }, (_, i) => ({ x: i * 2, y: valueAt(edge, i * 2) - valueAt(line, i * 2) }))
+  return { lower: less(band.lower), upper: less(band.upper) }
+}
+
+/** What is left over: measured less curve in L*, group by group, with the band about the curve. */
+export function leftOver(curve: ChartCurve, measured: readonly (readonly PlotPoint[])[]): { points: PlotPoint[][], band: Band } {
+  const line = responseLine(curve)
   return {
-    points: measured.map(p => ({ x: p.x, y: p.y - valueAt(line, p.x) })),
-    band: { lower: aboutZero(band.lower), upper: aboutZero(band.upper) },
+    points: measured.map(group => group.map(p => ({ x: p.x, y: p.y - valueAt(line, p.x) }))),
+    band: aboutLine(curve, responseBand(curve)),
   }
 }
 

@@ -31,9 +31,9 @@ describe('CurveTable', () => {
 
 describe('leftOver', () => {
   it('is measured less curve, with the band about zero', () => {
-    const { points, band } = leftOver(straight, [{ x: 40, y: 51.5 }, { x: 0, y: 20 }])
-    expect(points[0]).toEqual({ x: 40, y: expect.closeTo(1.5, 6) })
-    expect(points[1]!.y).toBeCloseTo(0, 6)
+    const { points, band } = leftOver(straight, [[{ x: 40, y: 51.5 }, { x: 0, y: 20 }]])
+    expect(points[0]![0]).toEqual({ x: 40, y: expect.closeTo(1.5, 6) })
+    expect(points[0]![1]!.y).toBeCloseTo(0, 6)
     // ± 0.02 of ink on a slope of 75 L* is ± 1.5 L*
     expect(valueAt(band.lower, 50)).toBeCloseTo(-1.5, 2)
     expect(valueAt(band.upper, 50)).toBeCloseTo(1.5, 2)
