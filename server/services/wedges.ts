@@ -116,7 +116,8 @@ async function briefsOf(on: Queryable, studioId: string, all: WedgeParts[]): Pro
     counts.find(({ wedgeId }) => wedgeId === wedge.id)?.prints ?? 0)]))
 }
 
-const shown = ({ id, benchId, code, kind, widthMm, heightMm, pixelsPerInch, throughCurveId, inkColor, path, archivedAt, createdAt }: WedgeRow, renders: Render[], printCount: number): WedgeBrief => ({
+const shown = ({ id, benchId, code, kind, widthMm, heightMm, pixelsPerInch, throughCurveId, inkColor, path, plan, archivedAt, createdAt }: WedgeRow, renders: Render[], printCount: number): WedgeBrief => ({
   id, benchId, code, kind, page: { widthMm, heightMm }, pixelsPerInch, throughCurveId, inkColor, path, renders, printCount,
+  exposureUnit: plan.kind === 'exposure-strip' ? plan.strip.unit : null,
   archivedAt: archivedAt?.toISOString() ?? null, createdAt: createdAt.toISOString(),
 })

@@ -50,6 +50,8 @@ export const wedge = z.object({
   id, benchId: id, code: z.string(), kind: wedgeKind,
   page: z.object({ widthMm: z.number(), heightMm: z.number() }), pixelsPerInch: z.number().int(), throughCurveId: id.nullable(),
   inkColor: z.string(), path,
+  /** of an exposure strip: what its patches’ exposures count */
+  exposureUnit: exposureUnit.nullable(),
   patches: z.array(wedgePatch), renders: z.array(render), printCount: z.number().int(), archivedAt: instant.nullable(), createdAt: instant,
 })
 export type Wedge = z.infer<typeof wedge>
