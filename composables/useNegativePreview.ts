@@ -47,7 +47,7 @@ export function useNegativePreview(editor: ReturnType<typeof useNegativeEditor>,
 
   const order = computed<PreviewOrder | null>(() => curve.value && draft.value && {
     adjustments: draft.value.adjustments, aim: draft.value.aim, response: curve.value.response,
-    process: stored.value!.process, mirror: draft.value.mirror, dim: theme.value === 'dim',
+    process: stored.value!.process, colourPath: curve.value.colourPath, mirror: draft.value.mirror, dim: theme.value === 'dim',
   })
   watch(order, next => next && preview.setOrder(next))
 

@@ -38,7 +38,7 @@ export function usePreview() {
   /** Reactive records cannot be sent: what is sent is a plain copy, and the long response itself. */
   function setOrder(order: PreviewOrder) {
     const { mix, ...points } = order.adjustments
-    send({ kind: 'order', order: { ...order, adjustments: { ...points, mix: { ...mix } }, response: toRaw(order.response) } })
+    send({ kind: 'order', order: { ...order, adjustments: { ...points, mix: { ...mix } }, response: toRaw(order.response), colourPath: toRaw(order.colourPath) } })
   }
   const read = (spot: { x: number, y: number } | null) => send({ kind: 'read', spot })
 

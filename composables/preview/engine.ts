@@ -5,6 +5,7 @@ import { adjustedTones } from '#shared/tone/adjustments'
 import { densityFromLightness } from '#shared/tone/density'
 import { buildForecastTable, buildLevelTable } from '#shared/tone/levels'
 import { tonalLosses, toneHistogram, type TonalLosses } from '#shared/tone/losses'
+import type { LabPoint } from '#shared/tone/looks'
 import { mixToTonePlane, mixWeights } from '#shared/tone/mix'
 import { buildPaletteTable, lightTableLightnesses } from '#shared/tone/palettes'
 import { stateLook, type TriptychState } from '#shared/tone/triptych'
@@ -16,6 +17,8 @@ export interface PreviewOrder {
   /** print lightness at 1025 equal steps of ink level */
   response: number[]
   process: Process
+  /** the bench’s own colours, where its print has been scanned; else the process’s */
+  colourPath: LabPoint[] | null
   mirror: boolean
   /** the dim room: amber, blue zero */
   dim: boolean
@@ -63,7 +66,7 @@ export class PreviewEngine {
     this.lightness = tones.map(tone => 100 * tone)
     this.levels = buildLevelTable(settings, tones)
     this.forecast = buildForecastTable(settings, this.levels)
-    const table = (state: TriptychState, lightness: Float64Array) => buildPaletteTable(stateLook(state, order.dim ? 'dim' : order.process), lightness)
+    const table = (state: TriptychState, lightness: Float64Array) => buildPaletteTable(stateLook(state, order.dim ? 'dim' : order.colourPath ?? order.process), lightness)
     this.tables = { photo: table('photo', this.lightness), film: table('film', lightTableLightnesses(this.levels)), print: table('print', this.forecast) }
     this.mix()
   }

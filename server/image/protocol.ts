@@ -1,6 +1,7 @@
 import type { ResponseFit, ResponsePoint } from '#shared/calibration/response-fit'
 import type { WedgePlan } from '#shared/calibration/wedge/plan'
 import type { Aim } from '#shared/schemas/curves'
+import type { PaletteKind } from '#shared/tone/palettes'
 import type { Adjustments, FilmFormat } from '#shared/schemas/negatives'
 
 /** What stands in a picture file's header, read before anything is decoded. */
@@ -72,7 +73,7 @@ export interface ImageCalls {
   /** writes the film file; progress 0…1 comes in between */
   film: { in: { path: string, target: string, order: FilmOrder, renderKey: string }, out: { bytes: number, sha256: string } }
   /** one state of the triptych as an 8-bit PNG, through the same code as film */
-  forecast: { in: { path: string, target: string, order: FilmOrder, width: number, state: 'photo' | 'film' | 'print', palette: string }, out: { width: number, height: number } }
+  forecast: { in: { path: string, target: string, order: FilmOrder, width: number, state: 'photo' | 'film' | 'print', palette: PaletteKind }, out: { width: number, height: number } }
   /** `fitResponse` of shared/calibration: too long for the process that answers requests */
   fitResponse: { in: { points: ResponsePoint[], prints: number }, out: ResponseFit }
 }

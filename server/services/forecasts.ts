@@ -9,9 +9,9 @@ import { cachedPicture, originalPath, type CachedPicture } from './photo-picture
 
 /** One state of the triptych as a picture, made by the same code as the film. */
 export function forecastOf(parts: NegativeParts, { width, state }: { width: number, state: 'photo' | 'film' | 'print' }): Promise<CachedPicture> {
-  const { photo, bench } = parts
+  const { photo, bench, curve } = parts
   const order = filmOrder(parts, 'png')
-  const palette = state === 'print' ? bench.process : state
+  const palette = state === 'print' ? curve.colourPath ?? bench.process : state
   const asked = createHash('sha256').update(canonicalJson({ engine: engineVersion, order, width, state, palette })).digest('hex')
   return cachedPicture(storageKeys.picture(photo.studioId, photo.id, asked), target =>
     imageChild().call('forecast', { path: originalPath(photo), target, order, width, state, palette }))

@@ -12,23 +12,33 @@ import { interpolateAll } from './response'
 import { linearToSrgb } from './srgb'
 import { greatestCode } from './working-space'
 
-/** `dim` shows any lightness in amber for the dim room: its blue is 0. */
-export type PaletteKind = Look | 'dim'
+/**
+ * A look by name; `dim` shows any lightness in amber for the dim room: its blue is 0; or a bench's own colours, L*a*b* (D50)
+ * points by strictly rising or falling L*, whose ends' a* and b* hold beyond them.
+ */
+export type PaletteKind = Look | 'dim' | readonly LabPoint[]
 
 /** An sRGB colour, 8 bits a channel. */
 export type Rgb8 = readonly [number, number, number]
 
 /** Colours made for each path; 4096 steps of L*, so a picked colour is within 0.013 L* before rounding to 8 bits. */
 const pathSteps = 4096
-const paths = new Map<PaletteKind, Uint32Array>()
+const paths = new Map<string, Uint32Array>()
+/** Looks by name, and a few benches' own paths: the oldest gives way. */
+const pathsKept = 24
 
 /**
  * The colour (8-bit sRGB) in which a look shows a lightness L* (clamped to 0 … 100). Its L* is the one asked for, within
  * the rounding to 8 bits; chroma is taken back where sRGB cannot show it. `dim` keeps the order of lightnesses only.
  */
 export function lookColour(kind: PaletteKind, lightness: number): Rgb8 {
-  const l = Math.min(100, Math.max(0, lightness))
-  return kind === 'dim' ? dimColour(l) : colourWithin(pathColour(kind)(l))
+  return colours(kind)(Math.min(100, Math.max(0, lightness)))
+}
+
+function colours(kind: PaletteKind): (lightness: number) => Rgb8 {
+  if (kind === 'dim') return dimColour
+  const along = pathColour(typeof kind === 'string' ? lookPaths[kind] : kind)
+  return lightness => colourWithin(along(lightness))
 }
 
 /**
@@ -69,17 +79,20 @@ export function lightTableLightnesses(levels: ArrayLike<number>): Float64Array {
 }
 
 function pathPixels(kind: PaletteKind): Uint32Array {
-  const known = paths.get(kind)
+  const name = typeof kind === 'string' ? kind : JSON.stringify(kind)
+  const known = paths.get(name)
   if (known) return known
-  const pixels = Uint32Array.from({ length: pathSteps + 1 }, (_, i) => pixelOf(lookColour(kind, 100 * i / pathSteps)))
-  paths.set(kind, pixels)
+  if (paths.size >= pathsKept) paths.delete(paths.keys().next().value!)
+  const colourAt = colours(kind)
+  const pixels = Uint32Array.from({ length: pathSteps + 1 }, (_, i) => pixelOf(colourAt(100 * i / pathSteps)))
+  paths.set(name, pixels)
   return pixels
 }
 
 const pixelOf = ([red, green, blue]: Rgb8): number => ((255 << 24) | (blue << 16) | (green << 8) | red) >>> 0
 
-function pathColour(look: Look): (lightness: number) => LabPoint {
-  const path = lookPaths[look]
+function pathColour(given: readonly LabPoint[]): (lightness: number) => LabPoint {
+  const path = [...given].sort((p, q) => p[0] - q[0])
   const lightnesses = path.map(point => point[0])
   const a = pchip(lightnesses, path.map(point => point[1]))
   const b = pchip(lightnesses, path.map(point => point[2]))

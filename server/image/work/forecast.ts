@@ -18,14 +18,13 @@ function fillPixel(state: TriptychState, { margin, tone }: FilmOrder, printLook:
 
 /** The page's preview of the same pixels, made by the same functions: channels first, then mix and table pixel by pixel. */
 export async function makeForecast({ path, target, order, width, state, palette }: ImageCalls['forecast']['in']): Promise<ImageCalls['forecast']['out']> {
-  const printLook = palette as PaletteKind
   const picture = await decodePicture(path)
   const height = Math.max(1, Math.round(width * order.picture.heightPixels / order.picture.widthPixels))
   const inner = placePicture(partSides({ ...picture, orientation: picture.header.orientation }, order.geometry), width, height)
   const plane = new Uint16Array(inner.width * inner.height)
   mixToTonePlane(workingChannels(picture, order.geometry, inner.width, inner.height), mixWeights(order.tone.adjustments.mix), plane)
-  const table = statePixels(state, order.tone, printLook)
-  const pixels = new Uint32Array(width * height).fill(fillPixel(state, order, printLook))
+  const table = statePixels(state, order.tone, palette)
+  const pixels = new Uint32Array(width * height).fill(fillPixel(state, order, palette))
   const isMirrored = state === 'film' && order.mirror
   for (let y = 0, from = 0; y < inner.height; y++) {
     const line = (inner.y + y) * width

@@ -25,6 +25,18 @@ describe('print colours', () => {
     }
   })
 
+  it('follow a bench’s own path, whichever end it begins with, and hold its ends beyond them', () => {
+    const path = [[22, 4, -24], [55, -6, -20], [94, 1, 4]] as const
+    for (const [l, a, b] of path) {
+      const shown = labOf(lookColour(path, l))
+      expect(Math.hypot(shown.l - l, shown.a - a, shown.b - b), `L* ${l}`).toBeLessThan(0.8)
+    }
+    expect(Math.abs(labOf(lookColour(path, 15)).b + 24)).toBeLessThan(1)
+    const tones = Float64Array.from({ length: 65536 }, (_, i) => i / 655.35)
+    expect(buildPaletteTable([...path].reverse(), tones)).toEqual(buildPaletteTable(path, tones))
+    expect(buildPaletteTable(path, tones)).not.toEqual(buildPaletteTable('cyanotype', tones))
+  })
+
   it('tell the processes apart: cyanotype is blue, Van Dyke brown, platinum near neutral', () => {
     const middle = (look: typeof looks[number]) => labOf(lookColour(look, 45))
     expect(middle('cyanotype').b).toBeLessThan(-25)

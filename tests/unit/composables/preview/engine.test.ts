@@ -4,7 +4,7 @@ import { starterResponse } from '../../../../shared/calibration/starter'
 
 const order = (patch: Partial<PreviewOrder> = {}): PreviewOrder => ({
   adjustments: { mix: { red: 1, green: 1, blue: 1 }, blackPoint: 0, whitePoint: 1, midtone: 0, contrast: 0 },
-  aim: 'even-lightness', response: starterResponse('cyanotype').response, process: 'cyanotype', mirror: true, dim: false, ...patch,
+  aim: 'even-lightness', response: starterResponse('cyanotype').response, process: 'cyanotype', colourPath: null, mirror: true, dim: false, ...patch,
 })
 /** A neutral ramp from black to white: the working space's codes are L*-like, equal channels are neutral. */
 function ramp(width: number, height = 2) {
@@ -27,6 +27,14 @@ const red = (pixel: number) => pixel & 255
 const blue = (pixel: number) => (pixel >> 16) & 255
 
 describe('PreviewEngine', () => {
+  it('shows the print in the bench’s own colours where there are any, and in amber in the dim room all the same', () => {
+    const colourPath: [number, number, number][] = [[94, 0, 12], [20, 12, 8]]
+    const own = drawn(engineWith({ colourPath }), 'print')
+    expect(own).not.toEqual(drawn(engineWith(), 'print'))
+    expect(red(own[50]!)).toBeGreaterThan(blue(own[50]!))
+    expect(drawn(engineWith({ colourPath, dim: true }), 'print')).toEqual(drawn(engineWith({ dim: true }), 'print'))
+  })
+
   it('shows the photo from black to white and the mirrored film the same way round, since light tones take ink', () => {
     const engine = engineWith()
     const [photo, film] = [drawn(engine, 'photo'), drawn(engine, 'film')]
