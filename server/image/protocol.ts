@@ -47,7 +47,7 @@ export interface FilmOrder {
   filmMm: { width: number, height: number }
 }
 
-/** All that decides a wedge's film file, with the engine's version. `tones` are the curve's, where it is printed through one. */
+/** All that decides a wedge's film file, with the engine's version. `page` is the film sheet, which is the file's page. */
 export interface WedgeFilmOrder {
   format: FilmFormat
   plan: WedgePlan
@@ -60,6 +60,7 @@ export interface WedgeFilmOrder {
   inkColor: string
   /** bench, date, path */
   lines: string[]
+  title: string
 }
 
 /** Calls to an image child; paths are absolute. Each answers or fails with a ComputeError's code. */
@@ -72,6 +73,10 @@ export interface ImageCalls {
   proxy: { in: { path: string, target: string, geometry: Geometry, width: number, height: number }, out: { width: number, height: number } }
   /** writes the film file; progress 0…1 comes in between */
   film: { in: { path: string, target: string, order: FilmOrder, renderKey: string }, out: { bytes: number, sha256: string } }
+  /** the same for a wedge, which is laid out from its record */
+  wedgeFilm: { in: { target: string, order: WedgeFilmOrder, renderKey: string }, out: { bytes: number, sha256: string } }
+  /** a wedge's sheet as its print may read, as an 8-bit PNG */
+  wedgePreview: { in: { target: string, order: WedgeFilmOrder, width: number, palette: string }, out: { width: number, height: number } }
   /** one state of the triptych as an 8-bit PNG, through the same code as film */
   forecast: { in: { path: string, target: string, order: FilmOrder, width: number, state: 'photo' | 'film' | 'print', palette: PaletteKind }, out: { width: number, height: number } }
   /** `fitResponse` of shared/calibration: too long for the process that answers requests */

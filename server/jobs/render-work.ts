@@ -1,6 +1,8 @@
 import { setTimeout as sleep } from 'node:timers/promises'
 import { ComputeError } from '#shared/errors'
+import type { CallOptions } from '../image/pool'
 import { filmChild } from '../services/image-child'
+import type { RenderRow } from '../services/renders'
 import { storage } from '../services/storage'
 import { storageKeys } from '../storage'
 import { claimRender, commitRender, failRender, LeaseLost, maxTakeUps, releaseRender, renewLease, type RenderLease } from './render-leases'
@@ -37,8 +39,7 @@ async function settle(lease: RenderLease, error: unknown): Promise<void> {
 }
 
 async function makeFilm(lease: RenderLease, settings: RenderWorkSettings, stopping: AbortSignal): Promise<void> {
-  const { studioId, photoId, renderKey, format, order } = lease.row
-  if (photoId === null || !('geometry' in order)) throw new ComputeError('unavailable', 'This film is not a negative’s.')
+  const { studioId, renderKey, format } = lease.row
   const file = await storage().temporary(`film_${settings.owner}`)
   const work = new AbortController()
   const onStop = () => work.abort(new WorkerStops('The worker is stopping.'))
@@ -47,9 +48,7 @@ async function makeFilm(lease: RenderLease, settings: RenderWorkSettings, stoppi
   let progress = 0
   const renewing = keepLease(lease, settings, work, () => progress)
   try {
-    const made = await filmChild().call('film', {
-      path: storage().pathOf(storageKeys.original(studioId, photoId)), target: file.path, order, renderKey,
-    }, { signal: work.signal, onProgress: fraction => progress = fraction })
+    const made = await callFor(lease.row, file.path, { signal: work.signal, onProgress: fraction => progress = fraction })
     await commitRender(lease, made, () => file.keep(storageKeys.film(studioId, renderKey, format)))
   }
   finally {
@@ -58,6 +57,13 @@ async function makeFilm(lease: RenderLease, settings: RenderWorkSettings, stoppi
     await renewing
     await file.discard()
   }
+}
+
+/** A negative's film is made of its photo, a wedge's of its record alone. */
+function callFor({ studioId, photoId, renderKey, order }: RenderRow, target: string, options: CallOptions) {
+  if (!('geometry' in order)) return filmChild().call('wedgeFilm', { target, order, renderKey }, options)
+  if (photoId === null) throw new ComputeError('unavailable', 'This film has no photo to be made of.')
+  return filmChild().call('film', { path: storage().pathOf(storageKeys.original(studioId, photoId)), target, order, renderKey }, options)
 }
 
 /** Renews the lease until the work ends; ends the work when the lease is lost or can't be renewed in time. */

@@ -1,6 +1,7 @@
 import type { FilmFormat } from '#shared/schemas/negatives'
 import { limits } from '#shared/schemas/limits'
 import type { NegativeParts } from './negative-parts'
+import type { WedgeParts } from './wedge-parts'
 
 const pictureEnding = /\.(?:jpe?g|jfif|png|tiff?|webp|avif|hei[cf])$/i
 // Control characters, and those that turn or hide what follows them.
@@ -24,6 +25,11 @@ export function filmFileName({ negative, bench }: Pick<NegativeParts, 'negative'
   const { size, pixelsPerInch } = negative.settings
   const facts = `${size.widthMm} x ${size.heightMm} mm, ${pixelsPerInch} ppi`
   return fileNameFrom(`${negative.name.slice(0, 45)} - ${bench.name.slice(0, 30)} - ${facts}`, format)
+}
+
+/** The same for a wedge; `title` names it and its code. */
+export function wedgeFileName({ wedge, bench }: Pick<WedgeParts, 'wedge' | 'bench'>, title: string, format: FilmFormat): string {
+  return fileNameFrom(`${title} - ${bench.name.slice(0, 30)} - ${wedge.widthMm} x ${wedge.heightMm} mm, ${wedge.pixelsPerInch} ppi`, format)
 }
 
 /** Cut by whole characters: half a surrogate pair is no text. */

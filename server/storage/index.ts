@@ -101,7 +101,7 @@ async function flush(path: string): Promise<void> {
 export const storageKeys = {
   original: (studioId: string, photoId: string) => `originals/${studioId}/${photoId}`,
   thumbnail: (studioId: string, photoId: string) => `cache/${studioId}/${photoId}/thumbnail.jpg`,
-  /** a proxy's or forecast's bytes, by the hash of what was asked */
-  picture: (studioId: string, photoId: string, hash: string) => `cache/${studioId}/${photoId}/${hash}`,
+  /** a proxy's, forecast's or wedge preview's bytes, by the hash of what was asked */
+  picture: (studioId: string, recordId: string, hash: string) => `cache/${studioId}/${recordId}/${hash}`,
   film: (studioId: string, renderKey: string, format: string) => `films/${studioId}/${renderKey}.${format}`,
 }

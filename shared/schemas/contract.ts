@@ -16,9 +16,7 @@ const serviceEndpoints = {
   ready: endpoint({ method: 'GET', path: '/api/health/ready', access: 'public', summary: 'Database and storage answer too.', answers: { 200: z.object({ status: z.literal('ok') }) } }),
 }
 
-const { wedgeFile: _, wedgePreview: __, ...wedgeRows } = wedgeEndpoints
-
 /** Every route of the service, by name. Validation, types and the OpenAPI document all come from here. */
 export const contract = {
-  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...walkEndpoints, ...photoEndpoints, ...negativeEndpoints, ...wedgeRows,
+  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...walkEndpoints, ...photoEndpoints, ...negativeEndpoints, ...wedgeEndpoints,
 } satisfies Record<string, Endpoint>

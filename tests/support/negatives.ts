@@ -20,10 +20,14 @@ export async function newNegative(studio: InStudio, changes: Record<string, unkn
 }
 
 /** Asks for a negative's film until it is there; `states` are the states seen on the way. */
-export async function filmOf({ agent, root }: InStudio, negativeId: string, format: 'tiff' | 'png' | 'pdf' = 'tiff', seconds = 60) {
+export const filmOf = ({ agent, root }: InStudio, negativeId: string, format: 'tiff' | 'png' | 'pdf' = 'tiff', seconds = 60) =>
+  filmAt(agent, `${root}/negatives/${negativeId}/file?format=${format}`, seconds)
+
+/** The same for any film file's address. */
+export async function filmAt(agent: Agent, path: string, seconds = 60) {
   const states: string[] = []
   for (const deadline = Date.now() + 1000 * seconds; Date.now() < deadline; await sleep(100)) {
-    const response = await agent.fetch('GET', `${root}/negatives/${negativeId}/file?format=${format}`)
+    const response = await agent.fetch('GET', path)
     if (response.status !== 202) return { status: response.status, headers: response.headers, bytes: Buffer.from(await response.arrayBuffer()), states }
     const { state } = await response.json() as { state: string }
     if (states.at(-1) !== state) states.push(state)

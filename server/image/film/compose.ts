@@ -18,11 +18,19 @@ export interface FilmInk {
 
 export function filmInk({ tone, inkColor }: Pick<FilmOrder, 'tone' | 'inkColor'>): FilmInk {
   const levels = buildLevelTable(tone)
-  const color = inkChannels(inkColor)
-  const parts = color.every(part => part === 0) ? [0] : color
-  const codeAt = (level: number) => parts.map(part => filmCodes(Float64Array.of(level), part)[0]!)
-  return { channels: parts.length as FilmChannels, tables: parts.map(part => filmCodes(levels, part)), clear: codeAt(0), full: codeAt(1) }
+  const channels = channelsOf([inkColor])
+  const parts = inkParts(inkColor, channels)
+  return { channels, tables: parts.map(part => filmCodes(levels, part)), clear: codesAt(0, parts), full: codesAt(1, parts) }
 }
+
+/** As few channels as hold all the inks of a film. */
+export const channelsOf = (inkColors: string[]): FilmChannels => inkColors.every(color => inkChannels(color).every(part => part === 0)) ? 1 : 3
+
+/** What an ink leaves in each of the film's channels, 0 … 255. */
+export const inkParts = (inkColor: string, channels: FilmChannels): number[] => channels === 1 ? [0] : inkChannels(inkColor)
+
+/** Film codes of one ink level, a channel each. */
+export const codesAt = (level: number, parts: number[]): number[] => parts.map(part => filmCodes(Float64Array.of(level), part)[0]!)
 
 /** Rows of interleaved 16-bit film codes as they lie on the film. The row is the same array each time. */
 export type FilmRows = Generator<Uint16Array, void, void>

@@ -1,13 +1,9 @@
-import { rmSync } from 'node:fs'
 import { mixWeights } from '#shared/tone/mix'
 import { decodePicture, lightPlane, type LightPlane } from '../decode'
 import { composeFilm, filmInk } from '../film/compose'
-import { FilmFile } from '../film/film-file'
 import { layOutFilm } from '../film/layout'
 import { layOutMarks } from '../film/marks'
-import { writePdf } from '../film/pdf'
-import { writePng } from '../film/png'
-import { writeTiff } from '../film/tiff'
+import { writeFilm } from '../film/write-film'
 import type { FilmOrder, ImageCalls } from '../protocol'
 import { placePixels } from '../sample/placement'
 import { toneRows } from '../sample/tone-rows'
@@ -30,20 +26,9 @@ export async function makeFilm({ path, target, order, renderKey }: ImageCalls['f
   const marks = await layOutMarks(order, layout)
   const tones = toneRows(plane, placePixels(source, order.geometry, layout.picture.width, layout.picture.height))
   const rows = composeFilm(tones, ink, layout, marks, order)
-  const spec = { width: layout.width, height: layout.height, channels: ink.channels, pixelsPerInch: order.pixelsPerInch }
-  const onRows = (done: number) => onProgress(decodingShare + (1 - decodingShare) * done / layout.height)
-  const file = new FilmFile(target)
-  try {
-    if (order.format === 'tiff') await writeTiff(file, rows, spec, onRows)
-    else if (order.format === 'png') await writePng(file, rows, spec, onRows)
-    else await writePdf(file, rows, { ...spec, pageMm: order.filmMm, title: order.marks.labelText || 'Film', renderKey }, onRows)
+  const spec = {
+    width: layout.width, height: layout.height, channels: ink.channels, pixelsPerInch: order.pixelsPerInch,
+    pageMm: order.filmMm, title: order.marks.labelText || 'Film', renderKey,
   }
-  catch (error) {
-    rmSync(target, { force: true })
-    throw error
-  }
-  finally {
-    file.close()
-  }
-  return { bytes: file.position, sha256: FilmFile.sha256(target) }
+  return await writeFilm(target, order.format, rows, spec, done => onProgress(decodingShare + (1 - decodingShare) * done / layout.height))
 }

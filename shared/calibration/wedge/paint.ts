@@ -52,10 +52,14 @@ function fill({ widthPx, heightPx, pixelsPerInch, codes }: LevelRaster, { xMm, y
   for (let y = y0; y < y1; y++) codes.fill(code, y * widthPx + x0, y * widthPx + x1)
 }
 
+/** Neighbouring cells share their edges, whatever these are rounded to. */
 function fillGrid(raster: LevelRaster, place: RectMm, count: number, codeAt: (row: number, column: number) => number): void {
-  const [w, h] = [place.widthMm / count, place.heightMm / count]
+  const edges = (fromMm: number, lengthMm: number): number[] => Array.from({ length: count + 1 }, (_, i) => pixelsFromMm(fromMm + lengthMm * i / count, raster.pixelsPerInch))
+  const [across, down] = [edges(place.xMm, place.widthMm), edges(place.yMm, place.heightMm)]
   for (let row = 0; row < count; row++) {
-    for (let column = 0; column < count; column++) fill(raster, rect(place.xMm + column * w, place.yMm + row * h, w, h), codeAt(row, column))
+    for (let y = down[row]!; y < down[row + 1]!; y++) {
+      for (let column = 0; column < count; column++) raster.codes.fill(codeAt(row, column), y * raster.widthPx + across[column]!, y * raster.widthPx + across[column + 1]!)
+    }
   }
 }
 

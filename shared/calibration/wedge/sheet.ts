@@ -15,7 +15,7 @@ export interface ChartSheet {
 /** Bare film above a chart at most, mm: what is below stays in one piece and can be used for something else. */
 const aboveMm = 10
 /** Lines that say where to cut: their distance from the chart, length and width, mm. */
-const [awayMm, cutMm, lineMm] = [1, 4, 0.25]
+const [awayMm, cutMm, lineMm] = [1, 3, 0.25]
 
 /**
  * The sheet as it has to lie for a chart: as asked, or on its other side where the chart fits only so.

@@ -37,7 +37,7 @@ export function tabletDensities({ steps, densities }: Tablet): number[] {
 export function tabletPage(grid: WedgeGrid, { steps, stepWidthMm, stepHeightMm }: Tablet): WedgePage {
   const [widthMm, heightMm] = [steps * stepWidthMm, stepHeightMm]
   const { columns, rows } = wedgeGrids[grid]
-  const [roomX, roomY] = [columns * cellSideMm - 2, rows * cellSideMm - 4 * aroundMm]
+  const [roomX, roomY] = [columns * cellSideMm - 4, rows * cellSideMm - 4 * aroundMm]
   if (widthMm > roomX || heightMm > roomY) throw new ComputeError('invalid_input', `A tablet of ${widthMm} × ${heightMm} mm is larger than this guide’s window can be (${roomX} × ${roomY} mm). Take a larger film sheet, or check the size of a step.`, [{ path: 'tablet', message: `At most ${roomX} × ${roomY} mm.` }])
   return guidePage(grid, (field) => {
     const tablet = rect(field.xMm + (field.widthMm - widthMm) / 2, field.yMm + (field.heightMm - heightMm) / 2, widthMm, heightMm)

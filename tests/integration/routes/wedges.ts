@@ -21,6 +21,14 @@ export const wedgeCases: RouteCase[] = [
   },
   { file: `${wedge}/index.get.ts`, row: 'wedge', good: ofNew },
   { file: `${wedge}/index.delete.ts`, row: 'archiveWedge', good: async world => ({ ...await ofNew(world), status: 204 }) },
+  {
+    file: `${wedge}/file.get.ts`, row: 'wedgeFile', good: async world => ({ ...await ofNew(world), query: { format: 'png' }, status: 202 }),
+    bad: [{ why: 'another format', call: () => ({ query: { format: 'jpeg' }, status: 422, code: 'invalid_input' }) }],
+  },
+  {
+    file: `${wedge}/preview.get.ts`, row: 'wedgePreview', good: async world => ({ ...await ofNew(world), query: { width: '64' } }),
+    bad: [{ why: 'a width of nothing', call: () => ({ query: { width: '0' }, status: 422, code: 'invalid_input' }) }],
+  },
   { file: `${wedge}/prints/index.get.ts`, row: 'listWedgePrints', good: ofNew },
   {
     file: `${wedge}/prints/index.post.ts`, row: 'createWedgePrint', good: async world => ({ ...await ofNew(world), json: { number: 3, exposure: { value: 480, unit: 's' } }, status: 201 }),

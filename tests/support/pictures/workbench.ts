@@ -3,8 +3,9 @@ import { mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { afterAll, vi } from 'vitest'
-import type { FilmOrder } from '../../../server/image/protocol'
+import type { FilmOrder, WedgeFilmOrder } from '../../../server/image/protocol'
 import { makeFilm } from '../../../server/image/work/film'
+import { makeWedgeFilm } from '../../../server/image/work/wedge-film'
 
 // Programs of other makers are started by these tests; on a busy machine that takes a while.
 vi.setConfig({ testTimeout: 60_000 })
@@ -26,6 +27,12 @@ export function openWorkbench() {
     async film(path: string, order: FilmOrder, renderKey = 'key') {
       const target = fresh(`film.${order.format}`)
       const result = await makeFilm({ path, target, order, renderKey }, () => {})
+      return { target, ...result }
+    },
+    /** makes a wedge's film and gives its path */
+    async wedgeFilm(order: WedgeFilmOrder, renderKey = 'key') {
+      const target = fresh(`wedge.${order.format}`)
+      const result = await makeWedgeFilm({ target, order, renderKey }, () => {})
       return { target, ...result }
     },
     /** 16-bit samples of a film file, read by libvips' own program */

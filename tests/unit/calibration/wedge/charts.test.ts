@@ -38,6 +38,7 @@ const edges = (page: WedgePage): RectMm[] => [
 describe('a plan', () => {
   it.each([
     ['scattered', '3f4367a39b28db35'], ['numbered', '01a0c73f86bd979c'], ['inkTrial', '4240d6119bdc288f'],
+    ['inkLoad', 'e97e77f797f36a1c'], ['strip', '3f4d5381f8443cbc'], ['tablet', '2788aa7f6fecc2cd'],
   ] as const)('(%s) is laid out as it was when it was first made', (name, hash) => {
     // The film of a stored plan must never change: hashes as they came out first.
     expect(hashOf(chartOf(plans[name], 360))).toBe(hash)
