@@ -24,7 +24,7 @@ const screens: Record<string, { path: (r: Records) => string, stands: string, is
   'pages/s/[studio]/benches/[bench]/index.vue': { path: r => `/s/${r.slug}/benches/${r.bench}`, stands: 'h1' },
   'pages/s/[studio]/benches/[bench]/change.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/change`, stands: 'h1' },
   'pages/s/[studio]/benches/[bench]/reading.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/reading`, stands: 'h1' },
-  'pages/s/[studio]/shelf.vue': { path: r => `/s/${r.slug}/shelf`, stands: 'h1' },
+  'pages/s/[studio]/shelf/index.vue': { path: r => `/s/${r.slug}/shelf`, stands: 'h1' },
   'pages/s/[studio]/people.vue': { path: r => `/s/${r.slug}/people`, stands: 'h1' },
 }
 
