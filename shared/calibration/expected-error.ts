@@ -1,57 +1,59 @@
-import { densityFromLightness, lightnessFromDensity } from '../tone/density'
+import { averageOf } from './spline-average'
+import type { PrintSpread } from './print-spread'
+import { assumedSpread, lightnessShift } from './print-spread'
 import { seededRandom } from './random'
 
 /** L*: the greatest error over all tones, half of the times below `median`, 19 of 20 times below `p95`. */
 export interface ErrorFigures { median: number, p95: number }
-export interface ExpectedError { nextPrint: ErrorFigures, curve: ErrorFigures }
+export interface ExpectedError { nextPrint: ErrorFigures, curve: ErrorFigures, nextPrintWithOneMore: ErrorFigures }
 
-/** Print-to-print spread until three prints tell it; assumptions of ours, no source. Log exposure, and share of the coating. */
-export const assumedExposureSpread = 0.02
-export const assumedCoatingSpread = 0.01
-/** Slope of the print's logistic in log exposure, taken from an exposure scale of 1.8 between 1 % and 99 %; an assumption. */
-const assumedSlope = 2 * Math.log(99) / 1.8
+/** What the curve rests on: how many wedge prints, how they differ, and whether the draws already hold that difference. */
+export interface ErrorBasis { prints: number, spread?: PrintSpread, drawsHoldSpread?: boolean }
+
 /** Every so many of the 1025 levels is looked at. */
 const stride = 4
+/** Shifts this large are worked out, more and less; others are taken in proportion. */
+const step: PrintSpread = { exposure: 0.02, coating: 0.02 }
 
 /**
- * What errors to expect, max |ΔL*| over all tones. `curve`: of the curve itself, from the fit's draws. `nextPrint`: of the
- * next print made with it; to the curve's error comes `spread` times the print-to-print spread, a stated prior of 0.02 log H in
- * exposure and 1 % in coating (both normal). `spread` is √(1 + 1/prints), since the prints read had theirs too; 1 where
- * the draws hold that already.
+ * What errors to expect, max |ΔL*| over all tones.
+ *
+ * - `curve`: of the curve itself, from the fit's draws.
+ * - `nextPrint`: of the next print made with it. To the curve's error come the next print's own exposure and coating, and the
+ *   wedge prints' that the curve rests on: √(1 + 1/prints) times the print-to-print spread, which shrinks slowly and not below
+ *   the spread itself. Where the draws hold the prints' share already, the spread alone.
+ * - `nextPrintWithOneMore`: the same with one wedge print more, what parts prints and patches averaging out by the root law.
  */
-export function expectedError(curve: Float64Array, draws: readonly Float64Array[], spread: number): ExpectedError {
+export function expectedError(curve: Float64Array, draws: readonly Float64Array[], { prints, spread = assumedSpread, drawsHoldSpread = false }: ErrorBasis): ExpectedError {
   const random = seededRandom(2)
-  const shift = shiftOf(curve)
-  const ofCurve = draws.map(draw => greatest(curve, draw, () => 0))
-  const ofNext = draws.map((draw) => {
-    const [exposure, coating] = [random.normal() * spread * assumedExposureSpread, random.normal() * spread * assumedCoatingSpread]
-    return greatest(curve, draw, i => shift(i, exposure, coating))
+  const shifts = shiftTables(curve)
+  const mean = averageOf(draws)
+  // Each shift both ways, so that chance does not tie it to its draw.
+  const trials = draws.flatMap((draw) => {
+    const [exposure, coating] = [random.normal() * spread.exposure, random.normal() * spread.coating]
+    return [{ draw, exposure, coating }, { draw, exposure: -exposure, coating: -coating }]
   })
-  return { curve: figures(ofCurve), nextPrint: figures(ofNext) }
-}
-
-/** How far one level's lightness moves with a change of log exposure and of coating, on a print of logistic response. */
-function shiftOf(curve: Float64Array): (i: number, exposure: number, coating: number) => number {
-  const densities = curve.map(l => densityFromLightness(Math.max(l, 1)))
-  const paper = densities.at(-1)!
-  const range = densities[0]! - paper
-  return (i, exposure, coating) => {
-    const net = densities[i]! - paper
-    const moved = assumedSlope * net * (1 - net / range) * exposure + net * coating
-    return lightnessFromDensity(Math.min(6, Math.max(-1, densities[i]! + moved))) - curve[i]!
+  const errors = (nearness: number, ownPrints: number): ErrorFigures => figures(trials.map(({ draw, exposure, coating }) =>
+    greatest(curve.length, i => mean[i]! - curve[i]! + nearness * (draw[i]! - mean[i]!) + shifts(i, ownPrints * exposure, ownPrints * coating))))
+  const own = (count: number): number => drawsHoldSpread ? 1 : Math.sqrt(1 + 1 / count)
+  return {
+    curve: errors(1, 0),
+    nextPrint: errors(1, own(prints)),
+    nextPrintWithOneMore: errors(Math.sqrt(prints / (prints + 1)), own(prints + 1)),
   }
 }
 
-/** Standard deviations of lightness, L*, by the stated spread at the tones where each shows most. */
-export function shiftDeviations(curve: Float64Array): { exposure: number, coating: number } {
-  const shift = shiftOf(curve)
-  const most = (exposure: number, coating: number): number => curve.reduce((max, _, i) => Math.max(max, Math.abs(shift(i, exposure, coating))), 0)
-  return { exposure: most(assumedExposureSpread, 0), coating: most(0, assumedCoatingSpread) }
+/** How far a level's lightness moves with exposure and coating. */
+function shiftTables(curve: Float64Array): (i: number, exposure: number, coating: number) => number {
+  const more = { exposure: lightnessShift(curve, step.exposure, 0), coating: lightnessShift(curve, 0, step.coating) }
+  const less = { exposure: lightnessShift(curve, -step.exposure, 0), coating: lightnessShift(curve, 0, -step.coating) }
+  const read = (kind: 'exposure' | 'coating', i: number, amount: number): number => (amount > 0 ? more : less)[kind][i]! * Math.abs(amount) / step[kind]
+  return (i, exposure, coating) => read('exposure', i, exposure) + read('coating', i, coating)
 }
 
-function greatest(curve: Float64Array, draw: Float64Array, shift: (i: number) => number): number {
+function greatest(length: number, error: (i: number) => number): number {
   let most = 0
-  for (let i = 0; i < curve.length; i += stride) most = Math.max(most, Math.abs(draw[i]! - curve[i]! + shift(i)))
+  for (let i = 0; i < length; i += stride) most = Math.max(most, Math.abs(error(i)))
   return most
 }
 

@@ -64,7 +64,7 @@ export function fitResponse(points: readonly ResponsePoint[], { prints = 1 }: { 
   return {
     response: [...response], low: [...low], high: [...high], method, used,
     blackLightness: response[0]!, whiteLightness: response[responsePoints - 1]!,
-    expectedError: expectedError(response, finished, Math.sqrt(1 + 1 / prints)),
+    expectedError: expectedError(response, finished, { prints }),
     warnings: warningsOf(used, method),
   }
 }

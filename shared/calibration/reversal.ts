@@ -1,3 +1,4 @@
+import type { Warning } from '../schemas/curves'
 import { responsePoints } from '../tone/response'
 
 /** A print that gets lighter again where it should be darkest. */
@@ -28,4 +29,18 @@ export function findReversal(raw: Float64Array, draws: readonly Float64Array[]):
   const deviation = Math.sqrt(rises.reduce((sum, v) => sum + (v - mean) ** 2, 0) / (rises.length - 1))
   const significance = rise / deviation
   return significance > leastSignificance ? { level: darkest / (responsePoints - 1), rise, significance } : null
+}
+
+/** A response that starts at a level: what lies before it prints no darker, so it counts as the tone there. */
+export function startingAt(response: Float64Array, level: number): Float64Array {
+  const first = Math.round(level * (responsePoints - 1))
+  return response.map((value, i) => i < first ? response[first]! : Math.max(value, response[first]!))
+}
+
+/** What to do about a reversal, the harmless causes first. */
+export function reversalWarning({ level, rise }: Reversal): Warning {
+  return {
+    code: 'reversal',
+    message: `Clear film prints ${rise.toFixed(1)} L* lighter than ${(100 * level).toFixed(0)} % ink. Has the print dried and oxidised (a day, or weak peroxide)? Bronzing reads lighter too. Read it again then; only if it still reverses, expose less. This curve starts at ${(100 * level).toFixed(0)} % ink.`,
+  }
 }

@@ -30,6 +30,11 @@ export function averageCurve(weighed: readonly WeighedCandidate[], grids: readon
   return mean
 }
 
+/** The mean of curves at the same positions. */
+export function averageOf(curves: readonly Float64Array[]): Float64Array {
+  return curves[0]!.map((_, i) => curves.reduce((sum, curve) => sum + curve[i]!, 0) / curves.length)
+}
+
 /**
  * Curves drawn from the mixture: each candidate by its weight, its coefficients α + spread·s·L⁻ᵀz with M = L·Lᵀ, z standard
  * normal. About `count` draws in all, each candidate in proportion; `spread` 1 is the posterior itself.

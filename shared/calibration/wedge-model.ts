@@ -2,7 +2,8 @@ import { cubicBasis } from './bspline'
 import { factorise, logDeterminant, solveLowerColumns } from './cholesky'
 import type { FieldParameters } from './covariance'
 import { smoothFields, withMottle } from './covariance'
-import { shiftDeviations } from './expected-error'
+import type { PrintSpread } from './print-spread'
+import { assumedSpread, greatestShifts } from './print-spread'
 import { splineCount, warpedAxes } from './smooth-fit'
 import type { WeighedCandidate } from './spline-average'
 import { weighCandidates } from './spline-average'
@@ -25,11 +26,11 @@ export interface WedgeModel {
 
 /**
  * Steps 2 to 4 of the wedge fit. `first` is the first fit's response, `deviation` its residuals' standard deviation, L*.
- * What does not change with the mottle's parameters is made once.
+ * What does not change with the mottle's parameters is made once. Several prints have each their own exposure and coating, by `spread`.
  */
-export function wedgeModel(prints: readonly WedgePrint[], first: Float64Array, deviation: number): WedgeModel {
+export function wedgeModel(prints: readonly WedgePrint[], first: Float64Array, deviation: number, spread = assumedSpread): WedgeModel {
   const axes = warpedAxes(first)
-  const shift = prints.length > 1 ? shiftOverNoise(first, deviation) : undefined
+  const shift = prints.length > 1 ? shiftOverNoise(first, deviation, spread) : undefined
   const parts = prints.map(print => partOf(print, first, axes, shift))
   const candidatesAt = (field: FieldParameters): SplineCandidate[] => {
     const whitened = parts.map(part => whiten(part, field, axes.length))
@@ -92,8 +93,8 @@ function joined(parts: readonly Float64Array[]): Float64Array {
   return all
 }
 
-/** The stated print-to-print spread at the tones where it shows most, over the patches' noise. */
-function shiftOverNoise(first: Float64Array, deviation: number): { exposure: number, coating: number } {
-  const { exposure, coating } = shiftDeviations(first)
+/** The print-to-print spread at the tones where it shows most, over the patches' noise. */
+function shiftOverNoise(first: Float64Array, deviation: number, spread: PrintSpread): PrintSpread {
+  const { exposure, coating } = greatestShifts(first, spread)
   return { exposure: exposure / deviation, coating: coating / deviation }
 }

@@ -32,7 +32,14 @@ export function inkLevelForLightness(response: Response, lightness: number): num
 export function curveLevels(response: Response, aim: Aim): Float64Array {
   requireResponse(response)
   const wanted = aimCurve(aim, response[0]!, response[responsePoints - 1]!)
-  return Float64Array.from({ length: responsePoints }, (_, i) => positionOf(response, wanted(i / (responsePoints - 1))))
+  return Float64Array.from({ length: responsePoints }, (_, i) => i === 0 ? deepestLevel(response) : positionOf(response, wanted(i / (responsePoints - 1))))
+}
+
+/** The greatest level that still prints as deep as clear film: where a print reverses its shadows, the curve starts there. */
+function deepestLevel(response: Response): number {
+  let last = 0
+  while (response[last + 1] === response[0]) last++
+  return last / (responsePoints - 1)
 }
 
 /**

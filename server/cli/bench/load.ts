@@ -1,6 +1,7 @@
 import { setTimeout as sleep } from 'node:timers/promises'
 import { crc32, deflateSync } from 'node:zlib'
-import { measured, type Measure, type RunningService, type SuiteContext } from './suite'
+import { signedIn, type Client } from './client'
+import { measured, type Measure, type SuiteContext } from './suite'
 
 const requestsPerSecond = 50
 const seconds = 30
@@ -30,27 +31,6 @@ export async function* run({ startService }: SuiteContext): AsyncIterable<Measur
   finally {
     await service.stop()
   }
-}
-
-type Client = Awaited<ReturnType<typeof signedIn>>
-
-async function signedIn(address: RunningService['address']) {
-  let cookie = ''
-  const send = async (method: string, path: string, body?: unknown) => {
-    const form = body instanceof FormData
-    const headers: Record<string, string> = { cookie, ...body === undefined || form ? {} : { 'content-type': 'application/json' } }
-    const response = await fetch(address + path, { method, headers, body: form ? body : body === undefined ? undefined : JSON.stringify(body) })
-    const set = response.headers.getSetCookie().map(c => c.split(';')[0]!)
-    if (set.length) cookie = set.join('; ')
-    return response
-  }
-  const json = async (method: string, path: string, body?: unknown) => {
-    const response = await send(method, path, body)
-    if (!response.ok) throw new Error(`${method} ${path} answered ${response.status}: ${await response.text()}`)
-    return await response.json() as Record<string, unknown> & { id: string }
-  }
-  const { studio } = await json('POST', '/api/auth/register', { name: 'Bench', email: `${crypto.randomUUID()}@bench.example`, password: crypto.randomUUID() }) as unknown as { studio: { id: string } }
-  return { send, json, root: `/api/studios/${studio.id}` }
 }
 
 /** A photo, a negative to look at, and large films to keep the worker busy. */

@@ -1,7 +1,11 @@
 import { isotonic } from '#shared/calibration/isotonic'
 import { pchip } from '#shared/calibration/pchip'
+import type { SeededRandom } from '#shared/calibration/random'
 import { curveLevels } from '#shared/tone/levels'
 import { interpolateAll, responsePoints } from '#shared/tone/response'
+import type { PrintQuality } from '../../../tests/support/simulator/print'
+import type { PrintedBench } from '../../../tests/support/simulator/system'
+import { printStepsInOrder } from '../../../tests/support/simulator/wedge'
 import { fitPolynomial } from './polynomial'
 
 export interface Step { level: number, lightness: number }
@@ -25,3 +29,7 @@ const straightLines = (steps: Step[]): Float64Array => interpolateAll(isotonic(s
 function isotonicPchip(steps: Step[]): Float64Array {
   return grid.map(pchip(steps.map(s => s.level), [...isotonic(steps.map(s => s.lightness))]))
 }
+
+/** Prints of a system, made the same way as its wedges. */
+export const stepsPrintedBy = (system: PrintedBench, quality: PrintQuality, random: SeededRandom): PrintSteps =>
+  (columns, rows, steps) => printStepsInOrder(system, columns, rows, steps, quality, random)

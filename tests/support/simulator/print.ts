@@ -1,6 +1,6 @@
 import type { SeededRandom } from '../../../shared/calibration/random'
 import { valueAt } from '../../../shared/tone/response'
-import type { PrintSystem } from './system'
+import type { PrintedBench } from './system'
 
 /** How evenly a print was made. Lightness figures hold at the tone where the coating shows most. */
 export interface PrintQuality {
@@ -25,15 +25,16 @@ export interface PatchPlan { level: number, x: number, y: number, xMm: number, y
 
 /**
  * Lightness of every patch on one print of a system: coating gradient and mottle, texture, light that falls off from a centre.
- * Coating and light are even on the whole: what a print has more or less of both counts as print-to-print, not as this.
+ * Gradient and light are even on the whole: what a print has more or less of both counts as print-to-print, not as this. The
+ * mottle keeps the mean that chance gives it, as nothing on one print tells it from tone.
  */
-export function printPatches(system: PrintSystem, plan: readonly PatchPlan[], quality: PrintQuality, random: SeededRandom): number[] {
+export function printPatches(system: PrintedBench, plan: readonly PatchPlan[], quality: PrintQuality, random: SeededRandom): number[] {
   const perLightness = 1 / greatestCoatingEffect(system)
   const direction = 2 * Math.PI * random.uniform()
   const mottle = mottleField(random)
   const [centreX, centreY] = [0.3 * random.normal(), 0.3 * random.normal()]
-  const coatings = withoutMean(plan.map(({ x, y, xMm, yMm }) =>
-    perLightness * (quality.gradient * (x * Math.cos(direction) + y * Math.sin(direction)) + quality.mottle * mottle(xMm, yMm))))
+  const coatings = plan.map(({ x, y, xMm, yMm }) =>
+    perLightness * (quality.gradient * (x * Math.cos(direction) + y * Math.sin(direction)) + quality.mottle * mottle(xMm, yMm)))
   const exposures = withoutMean(plan.map(({ x, y }) => Math.log10(1 - Math.min(0.6, quality.fallOff * ((x - centreX) ** 2 + (y - centreY) ** 2) / 2))))
   return plan.map(({ level, pixels }, i) => {
     const texture = perLightness * quality.texture / Math.sqrt(pixels) * random.normal()
@@ -47,7 +48,7 @@ function withoutMean(values: readonly number[]): number[] {
 }
 
 /** L* by which the tone that shows it most changes when the coating doubles, to first order. */
-function greatestCoatingEffect(system: PrintSystem): number {
+function greatestCoatingEffect(system: PrintedBench): number {
   const small = 1e-4
   const effects = Array.from({ length: 101 }, (_, i) => Math.abs(system.lightness(i / 100, { exposure: 0, coating: small }) - system.lightness(i / 100)) / small)
   return Math.max(...effects)
@@ -67,7 +68,7 @@ function mottleField(random: SeededRandom): (xMm: number, yMm: number) => number
  * Greatest |ΔL*| of a ramp printed evenly by the system through a curve, against the straight line between the bench's own
  * deepest tone and paper; `levels` are the curve's levels at equal steps of tone.
  */
-export function rampErrors(system: PrintSystem, levels: ArrayLike<number>): { greatest: number, mean: number } {
+export function rampErrors(system: PrintedBench, levels: ArrayLike<number>): { greatest: number, mean: number } {
   const [black, white] = [system.lightness(0), system.lightness(1)]
   const errors = Array.from({ length: 256 }, (_, i) => Math.abs(system.lightness(valueAt(levels, i / 255)) - (black + (white - black) * i / 255)))
   return { greatest: Math.max(...errors), mean: errors.reduce((a, b) => a + b, 0) / errors.length }

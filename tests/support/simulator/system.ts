@@ -10,11 +10,15 @@ export interface Disturbance { exposure: number, coating: number }
 export const undisturbed: Disturbance = { exposure: 0, coating: 0 }
 
 /** A film, ink, paper and lamp: what lightness an ink level prints as. */
-export interface PrintSystem {
+export interface PrintedBench {
+  lightness: (level: number, disturbance?: Disturbance) => number
+}
+
+/** A bench with what it was drawn from. */
+export interface PrintSystem extends PrintedBench {
   film: FilmShape
   paper: PaperShape
   exposureScale: number
-  lightness: (level: number, disturbance?: Disturbance) => number
 }
 
 export interface SystemRange { exposureScaleFrom: number, exposureScaleTo: number }
@@ -31,4 +35,22 @@ export function drawSystem(random: SeededRandom, { exposureScaleFrom, exposureSc
   const lightness = (level: number, { exposure, coating } = undisturbed): number =>
     lightnessFromDensity(paperDensity + netDensity * (1 + coating) * share(exposure - fullInk * filmShapes[film](level)))
   return { film, paper, exposureScale, lightness }
+}
+
+/**
+ * The same bench with shadows that reverse: below `upTo` ink clear film prints ever lighter, so that it is `dip` L* lighter
+ * than the deepest tone, which lies at `darkestLevel`.
+ */
+export function withReversal(bench: PrintedBench, dip: number, upTo: number): { bench: PrintedBench, darkestLevel: number } {
+  const levels = Array.from({ length: 401 }, (_, i) => i / 400)
+  const lightnessWith = (rise: number): PrintedBench['lightness'] => (level, disturbance) => bench.lightness(level, disturbance) + rise * Math.max(0, 1 - level / upTo) ** 2
+  const dipOf = (lightness: PrintedBench['lightness']): number => lightness(0) - Math.min(...levels.map(level => lightness(level)))
+  let [less, more] = [0, 60]
+  for (let i = 0; i < 40; i++) {
+    const middle = (less + more) / 2
+    if (dipOf(lightnessWith(middle)) < dip) less = middle
+    else more = middle
+  }
+  const lightness = lightnessWith(more)
+  return { bench: { lightness }, darkestLevel: levels.reduce((darkest, level) => lightness(level) < lightness(darkest) ? level : darkest, 0) }
 }

@@ -6,6 +6,7 @@ import { toneWeights } from '../../../shared/calibration/tone-weights'
 import { fitSoundPrints, fitWedge } from '../../../shared/calibration/wedge-fit'
 import { layoutWedge } from '../../../shared/calibration/wedge-layout'
 import { wedgeModel } from '../../../shared/calibration/wedge-model'
+import { withSuspectsHeard } from '../../../shared/calibration/wedge-suspects'
 import type { WedgePatch } from '../../../shared/calibration/wedge-print'
 import { curveLevels } from '../../../shared/tone/levels'
 import reference from '../../fixtures/wedge-fit.json'
@@ -103,6 +104,19 @@ describe('a fitted wedge', () => {
     expect(found).toBeGreaterThanOrEqual(spoiled.size - 1)
     expect(used[0]!.filter(u => !u).length - found).toBeLessThan(20)
     expect(rampErrors(system, curveLevels(response, 'even-lightness')).greatest).toBeLessThan(1)
+  })
+
+  it('drops hardly any patch of a clean print, steep as its tones may be, and hears those it suspects', () => {
+    // A system whose first fit cuts a steep tone short: by the residuals alone 17 of its honest patches looked spoiled.
+    const { print } = simulated(1041, printQualities.typical, '24x16')
+    expect(fitWedge([print]).used[0]!.filter(u => !u).length).toBeLessThanOrEqual(3)
+    const fit = fitWedge([simulated(2).print])
+    const honest = simulated(2).print.map(p => Object.freeze({ ...p }))
+    const suspected = honest.map((_, i) => i % 20 !== 7)
+    expect(withSuspectsHeard(honest, suspected, fit).filter(u => !u)).toHaveLength(0)
+    const dirty = honest.map((p, i) => i === 27 ? { ...p, lightness: p.lightness + 15 } : p)
+    const heard = withSuspectsHeard(dirty, suspected, fit)
+    expect(heard.flatMap((u, i) => u ? [] : [i])).toEqual([27])
   })
 
   it('pools prints: two of them tell more of the next than one', () => {
