@@ -13,7 +13,7 @@ import { makeWedgePreview } from './work/wedge-preview'
 
 type Work = { [K in keyof ImageCalls]: (input: ImageCalls[K]['in'], onProgress: (fraction: number) => void) => Promise<ImageCalls[K]['out']> }
 
-const work: Work = { probe: probePicture, thumbnail: makeThumbnail, proxy: makeProxy, film: makeFilm, wedgeFilm: makeWedgeFilm, wedgePreview: makeWedgePreview, forecast: makeForecast, fitResponse: fitCurve }
+const work: Work = { probe: probePicture, thumbnail: makeThumbnail, proxy: makeProxy, film: makeFilm, wedgeFilm: makeWedgeFilm, wedgePreview: makeWedgePreview, forecast: makeForecast, fitCurve }
 
 /** The parent hears of progress about ten times a second at most. */
 const progressEveryMs = 100

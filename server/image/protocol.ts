@@ -1,5 +1,6 @@
-import type { ResponseFit, ResponsePoint } from '#shared/calibration/response-fit'
+import type { CurveFit, CurveReading } from '#shared/calibration/curve-fit'
 import type { WedgePlan } from '#shared/calibration/wedge/plan'
+import type { ReadingChannel } from '#shared/schemas/benches'
 import type { Aim } from '#shared/schemas/curves'
 import type { PaletteKind } from '#shared/tone/palettes'
 import type { Adjustments, FilmFormat } from '#shared/schemas/negatives'
@@ -79,6 +80,6 @@ export interface ImageCalls {
   wedgePreview: { in: { target: string, order: WedgeFilmOrder, width: number, palette: string }, out: { width: number, height: number } }
   /** one state of the triptych as an 8-bit PNG, through the same code as film */
   forecast: { in: { path: string, target: string, order: FilmOrder, width: number, state: 'photo' | 'film' | 'print', palette: PaletteKind }, out: { width: number, height: number } }
-  /** `fitResponse` of shared/calibration: too long for the process that answers requests */
-  fitResponse: { in: { points: ResponsePoint[], prints: number }, out: ResponseFit }
+  /** `fitCurve` of shared/calibration: too long for the process that answers requests */
+  fitCurve: { in: { readings: CurveReading[], channel: ReadingChannel }, out: CurveFit }
 }

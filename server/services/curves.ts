@@ -2,17 +2,18 @@
 import { and, desc, eq, inArray, max, ne, sql } from 'drizzle-orm'
 import type { z } from 'zod'
 import { curvePoints } from '#shared/calibration/curve'
-import type { ResponseFit } from '#shared/calibration/response-fit'
+import type { CurveFit } from '#shared/calibration/curve-fit'
 import { ComputeError } from '#shared/errors'
 import type { Curve, CurveBrief, curveBody, curvePatch } from '#shared/schemas/curves'
+import { aimForChannel } from '#shared/tone/aims'
 import { db, type Queryable, type Transaction } from '../db/client'
-import { curveReadings, curves, readings, users } from '../db/schema'
+import { curveReadings, curves, users } from '../db/schema'
 import type { StudioAccess } from './access'
 import { recordEvent } from './audit'
-import { findBench, lockBench } from './benches'
+import { findBench, lockBench, type BenchRow } from './benches'
 import { bodyHashOf, createOnce, idFor } from './creation'
+import { fitOfReadings } from './curve-readings'
 import { hint } from './hints'
-import { imageChild } from './image-child'
 import { keyset, toPage, type Page } from './paging'
 import { requireCurrent, requireFound } from './revisions'
 
@@ -43,28 +44,20 @@ export async function createCurve(studio: StudioAccess, benchId: string, body: B
   if (bench.archivedAt) throw new ComputeError('wrong_state', 'This bench has been put away. Make a copy of it to go on.')
   const bodyHash = bodyHashOf({ ...body, benchId })
   const stored = body.id && await findCurve(db(), studio.id, body.id)
-  const fit = stored ? undefined : await fitReadings(studio.id, benchId, body.readingIds)
+  const fit = stored ? undefined : await fitOfReadings(bench, body.readingIds)
   return await db().transaction(async (tx) => {
-    const { created, row } = await createOnce(bodyHash, async () => fit && await insertDraft(tx, studio, benchId, body, bodyHash, fit), async () => body.id ? await findCurve(tx, studio.id, body.id) : undefined)
+    const { created, row } = await createOnce(bodyHash, async () => fit && await insertDraft(tx, studio, bench, body, bodyHash, fit), async () => body.id ? await findCurve(tx, studio.id, body.id) : undefined)
     return { created, item: await view(tx, row) }
   })
 }
 
-async function fitReadings(studioId: string, benchId: string, readingIds: string[]): Promise<ResponseFit> {
-  const rows = await db().select({ id: readings.id, state: readings.state, patches: readings.patches }).from(readings)
-    .where(and(eq(readings.studioId, studioId), eq(readings.benchId, benchId), inArray(readings.id, readingIds)))
-  const issues = readingIds.flatMap((id, i) => rows.some(row => row.id === id && row.state === 'ready') ? [] : [{ path: `readingIds.${i}`, message: 'This bench has no such finished reading.' }])
-  if (issues.length) throw new ComputeError('invalid_input', 'A curve is fitted from readings of its own bench.', issues)
-  const points = rows.flatMap(row => row.patches).flatMap(({ level, lightness, used }) => used && lightness !== null ? [{ level, lightness }] : [])
-  return await imageChild().call('fitResponse', { points, prints: rows.length })
-}
-
-async function insertDraft(tx: Transaction, studio: StudioAccess, benchId: string, body: Body, bodyHash: string, fit: ResponseFit): Promise<CurveRow | undefined> {
+async function insertDraft(tx: Transaction, studio: StudioAccess, { id: benchId, readingChannel }: BenchRow, body: Body, bodyHash: string, fit: CurveFit): Promise<CurveRow | undefined> {
   await lockBench(tx, studio.id, benchId)
   const [latest] = await tx.select({ version: max(curves.version) }).from(curves).where(and(eq(curves.studioId, studio.id), eq(curves.benchId, benchId)))
   const [row] = await tx.insert(curves).values({
-    studioId: studio.id, id: idFor(body), benchId, version: (latest?.version ?? 0) + 1, state: 'draft', aim: body.aim ?? 'even-lightness', calibrated: true,
-    response: fit.response, responseLow: fit.low, responseHigh: fit.high, expectedError: fit.expectedError, warnings: fit.warnings,
+    studioId: studio.id, id: idFor(body), benchId, version: (latest?.version ?? 0) + 1, state: 'draft', aim: aimForChannel(body.aim ?? 'even-lightness', readingChannel), calibrated: true,
+    response: fit.response, responseLow: fit.low, responseHigh: fit.high, responseLowOfAll: fit.lowOfAll, responseHighOfAll: fit.highOfAll,
+    expectedError: fit.expectedError, basis: fit.basis, colourPath: fit.colourPath, warnings: fit.warnings,
     notes: body.notes, bodyHash, createdBy: studio.personId,
   }).onConflictDoNothing({ target: [curves.studioId, curves.id] }).returning()
   if (!row) return undefined

@@ -2,6 +2,7 @@ import { and, eq, isNull, sql } from 'drizzle-orm'
 import type { z } from 'zod'
 import type { Aim } from '#shared/schemas/curves'
 import { filmFormats, type Negative, type negativeBody, type negativePatch } from '#shared/schemas/negatives'
+import { aimForChannel } from '#shared/tone/aims'
 import { db, type Queryable } from '../db/client'
 import { negatives, type NegativeSettings } from '../db/schema'
 import type { StudioAccess } from './access'
@@ -42,7 +43,7 @@ export async function createNegative(studio: StudioAccess, body: z.infer<typeof 
     requireFilmFits(filmSize(resolved), resolved.pixelsPerInch)
     return db().transaction(async (tx) => {
       const [row] = await tx.insert(negatives).values({
-        studioId: studio.id, id, bodyHash, name: name ?? photo.name, photoId, benchId: bench.id, curveId: curve.id, aim: aim ?? curve.aim, settings: resolved, createdBy: studio.personId,
+        studioId: studio.id, id, bodyHash, name: name ?? photo.name, photoId, benchId: bench.id, curveId: curve.id, aim: aimForChannel(aim ?? curve.aim, bench.readingChannel), settings: resolved, createdBy: studio.personId,
       }).onConflictDoNothing({ target: [negatives.studioId, negatives.id] }).returning()
       if (row) await tell(tx, row, 'created')
       return row
@@ -54,16 +55,17 @@ export async function createNegative(studio: StudioAccess, body: z.infer<typeof 
 /** What is left out stays. Another bench brings its own curve in use and its own mirroring, unless they are named too. */
 export async function changeNegative(studio: StudioAccess, id: string, patch: z.infer<typeof negativePatch>): Promise<Negative> {
   const { revision, name, benchId, curveId, aim, ...changes } = patch
-  const { negative } = await requireParts(studio, id)
+  const { negative, bench } = await requireParts(studio, id)
   requireCurrent(negative, revision)
   const movesTo = benchId !== undefined && benchId !== negative.benchId ? await benchForNegative(studio, { benchId }) : undefined
   const wantedCurve = curveId ?? (movesTo ? 'in-use' : undefined)
   const curve = wantedCurve === undefined ? undefined : await chooseCurve(studio, movesTo?.id ?? negative.benchId, wantedCurve)
   const settings = { ...negative.settings, ...(movesTo ? { mirror: movesTo.mirror } : {}), ...withoutUndefined(changes) }
   requireFilmFits(filmSize(settings), settings.pixelsPerInch)
+  const wantedAim = await nextAim(studio, negative, aim, curve?.aim)
   await db().transaction(async (tx) => {
     const [row] = await tx.update(negatives).set({
-      name, settings, benchId: movesTo?.id, curveId: curve?.id, aim: await nextAim(studio, negative, aim, curve?.aim), revision: sql`${negatives.revision} + 1`,
+      name, settings, benchId: movesTo?.id, curveId: curve?.id, aim: aimForChannel(wantedAim ?? negative.aim, (movesTo ?? bench).readingChannel), revision: sql`${negatives.revision} + 1`,
     }).where(and(eq(negatives.studioId, studio.id), eq(negatives.id, id), eq(negatives.revision, revision))).returning()
     if (row) return tell(tx, row, 'changed')
     requireCurrent((await requireParts(studio, id, tx)).negative, revision)
@@ -73,9 +75,8 @@ export async function changeNegative(studio: StudioAccess, id: string, patch: z.
 
 /** `null` goes back to the curve's own aim; a new curve's aim counts only where nothing else was chosen before. */
 async function nextAim(studio: StudioAccess, negative: NegativeRow, asked: Aim | null | undefined, ofNewCurve: Aim | undefined): Promise<Aim | undefined> {
-  if (asked) return asked
   if (asked === undefined) return undefined
-  return ofNewCurve ?? (await requireParts(studio, negative.id)).curve.aim
+  return asked ?? ofNewCurve ?? (await requireParts(studio, negative.id)).curve.aim
 }
 
 /** Put away: it is in no list any more. Its films stay in the cache until room is needed. */

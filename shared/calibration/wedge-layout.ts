@@ -51,6 +51,12 @@ export function layoutWedge({ grid, seed }: WedgeRecord): WedgeLayout {
   return { columns, rows, widthMm: columns * cellMm, heightMm: rows * cellMm, cells }
 }
 
+/** Where the cells of a grid lie, row by row, `xMm` and `yMm` being their centres counted from the middle of all cells. */
+export function cellPlacesOf(grid: WedgeGrid): { x: number, y: number, xMm: number, yMm: number }[] {
+  const { columns, rows } = wedgeGrids[grid]
+  return cellPlaces(columns, rows).map(({ x, y }) => ({ x, y, xMm: x * columns * cellMm / 2, yMm: y * rows * cellMm / 2 }))
+}
+
 /** Base-2 van der Corput number of an index: its binary digits mirrored behind the point. */
 export function vanDerCorput(index: number): number {
   let [value, digit] = [0, 0.5]
