@@ -4,7 +4,7 @@ import type { RectMm } from '#shared/calibration/wedge/page'
 import { centreOf, rect } from '#shared/calibration/wedge/page'
 import type { LevelRaster } from '#shared/calibration/wedge/paint'
 import { paintWedge, stampCoverage } from '#shared/calibration/wedge/paint'
-import { scatteredPage } from '#shared/calibration/wedge/scattered-page'
+import { scatteredGrids, scatteredPage } from '#shared/calibration/wedge/scattered-page'
 import { snapWedgePage } from '#shared/calibration/wedge/snap'
 
 const page = scatteredPage({ columns: 16, rows: 12 })
@@ -27,6 +27,21 @@ describe.each([300, 360, 720])('a wedge painted at %d pixels per inch', (ppi) =>
       const wanted = Math.round(255 * levels[i]!)
       for (const y of [toPx(yMm), toPx(yMm + heightMm) - 1]) {
         for (const x of [toPx(xMm), toPx(xMm + widthMm) - 1]) expect(raster.codes[y * raster.widthPx + x], `cell ${i}`).toBe(wanted)
+      }
+    }
+  })
+
+  it('leaves no seam between a marker’s modules', () => {
+    for (const grid of scatteredGrids) {
+      const whole = snapWedgePage(scatteredPage(grid), ppi)
+      const raster = paintWedge(whole, whole.patches.map(() => 0), null, ppi)
+      const pixels = (mm: number): number => Math.round(mm / 25.4 * ppi)
+      for (const { id, place } of whole.markers) {
+        // Along the middle of the frame's upper and left modules everything is full ink, whatever the pattern.
+        const [x, y] = [pixels(place.xMm + place.widthMm / 12), pixels(place.yMm + place.heightMm / 12)]
+        const across = raster.codes.subarray(y * raster.widthPx + pixels(place.xMm), y * raster.widthPx + pixels(place.xMm + place.widthMm))
+        const down = Array.from({ length: pixels(place.heightMm) }, (_, i) => raster.codes[(pixels(place.yMm) + i) * raster.widthPx + x])
+        expect([...across, ...down].filter(code => code !== 255), `marker ${id}`).toEqual([])
       }
     }
   })
