@@ -1,4 +1,5 @@
 import type { z } from 'zod'
+import { ComputeError } from '../../errors'
 import type { exposureStripPlan } from '../../schemas/wedges'
 import type { WedgeGrid } from '../wedge-layout'
 import { guidePage } from './guide-frame'
@@ -14,16 +15,22 @@ const [headMm, lineMm, belowMm] = [4, 3, 3]
 
 /**
  * Exposures of an exposure strip's windows in seconds or dose, the first row's from left to right, then the second row's, which
- * has them the other way round: each step's is `stopsPerStep` stops above the one before, rounded to what a clock can be read
- * to (0.1 below 10, 1 below 100, else 5), and the rounded one is what the paper gets.
+ * has them the other way round: each step's is `stopsPerStep` stops above the one before, and rounded; the rounded one is what
+ * the paper gets. Seconds are rounded to what a clock is read to (0.1 below 10, 1 below 100, else 5), light units to three figures.
+ * @throws ComputeError `invalid_input` when two steps come out the same.
  */
-export function stripExposures({ firstExposure, steps, stopsPerStep }: Strip): number[] {
-  const rising = Array.from({ length: steps }, (_, i) => asTimed(firstExposure * 2 ** (stopsPerStep * i)))
+export function stripExposures({ firstExposure, steps, stopsPerStep, unit }: Strip): number[] {
+  const rounded = unit === 's' ? asTimed : (exposure: number) => Number(exposure.toPrecision(3))
+  const rising = Array.from({ length: steps }, (_, i) => rounded(firstExposure * 2 ** (stopsPerStep * i)))
+  if (rising.some((exposure, i) => i > 0 && exposure <= rising[i - 1]!)) {
+    throw new ComputeError('invalid_input', 'The first steps of this strip are too short to tell apart on a clock. Begin with a longer exposure, or take larger steps.',
+      [{ path: 'exposureStrip.firstExposure', message: 'Begin with a longer exposure.' }])
+  }
   return [...rising, ...rising.toReversed()]
 }
 
 /** Tenths by division, so that 0.3 stays 0.3. */
-const asTimed = (exposure: number): number => exposure < 10 ? Math.max(1, Math.round(exposure * 10)) / 10 : exposure < 100 ? Math.round(exposure) : 5 * Math.round(exposure / 5)
+const asTimed = (exposure: number): number => exposure < 10 ? Math.round(exposure * 10) / 10 : exposure < 100 ? Math.round(exposure) : 5 * Math.round(exposure / 5)
 
 /**
  * The guide of an exposure strip: two rows of clear windows between bars of full ink. Two opaque cards cover them one by one,

@@ -1,8 +1,10 @@
 import { ComputeError } from '../../errors'
 import { bandsMm, layOutFrame } from './frame'
+import type { SizeMm } from '../../sheet/sizes'
 import type { WedgeGrid } from '../wedge-layout'
 import type { RectMm, WedgePage } from './page'
 import { rect } from './page'
+import { waysToLie } from './sheet'
 
 /** Side of a scattered wedge's cell, mm. */
 export const cellSideMm = 7
@@ -24,19 +26,21 @@ export function scatteredPage({ columns, rows }: ScatteredGrid): WedgePage {
 }
 
 /**
- * The largest grid whose film fits a sheet of the given size (mm, either way round): 24 × 24 takes 200 × 194 mm,
- * 24 × 16 takes 200 × 138 mm, 16 × 12 takes 144 × 110 mm.
+ * The largest grid for a sheet of the given size (mm, either way round): 24 × 24 takes 200 × 194 mm, 24 × 16 takes 200 × 138 mm,
+ * 16 × 12 takes 144 × 110 mm. One that leaves the margin that inkjets need goes first, unless the sheet is cut to a film's size.
  * @throws ComputeError `invalid_input` when not even the smallest fits.
  */
 export function gridForSheet(widthMm: number, heightMm: number): ScatteredGrid {
-  const [long, short] = [Math.max(widthMm, heightMm), Math.min(widthMm, heightMm)]
-  const fits = scatteredGrids.find(({ columns, rows }) => {
-    const sides = [bandsMm.left + columns * cellSideMm + bandsMm.right, bandsMm.top + rows * cellSideMm + bandsMm.bottom]
-    return Math.max(...sides) <= long && Math.min(...sides) <= short
-  })
-  if (!fits) throw new ComputeError('invalid_input', `The smallest wedge takes 144 × 110 mm of film; ${widthMm} × ${heightMm} mm is too small for it.`)
-  return fits
+  const sheet = { widthMm, heightMm }
+  const room = scatteredGrids.map(grid => waysToLie(pageSize(grid), sheet)[0]?.room)
+  const best = room.findIndex(kind => kind === 'ample' || kind === 'exact')
+  const found = scatteredGrids[best < 0 ? room.indexOf('tight') : best]
+  if (!found) throw new ComputeError('invalid_input', `The smallest wedge takes 144 × 110 mm of film; ${widthMm} × ${heightMm} mm is too small for it.`)
+  return found
 }
+
+const pageSize = ({ columns, rows }: ScatteredGrid): SizeMm =>
+  ({ widthMm: bandsMm.left + columns * cellSideMm + bandsMm.right, heightMm: bandsMm.top + rows * cellSideMm + bandsMm.bottom })
 
 /** The name that plans call a grid by. */
 export const gridName = ({ columns, rows }: ScatteredGrid): WedgeGrid => `${columns}x${rows}` as WedgeGrid

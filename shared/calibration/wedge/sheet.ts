@@ -17,17 +17,36 @@ const aboveMm = 10
 /** Lines that say where to cut: their distance from the chart, length and width, mm. */
 const [awayMm, cutMm, lineMm] = [1, 3, 0.25]
 
+/** What inkjets leave unprinted along a sheet's edges, mm (common practice). */
+const inkjetMarginMm = 3
+/** A sheet this much larger at most is cut for the chart, mm. */
+const exactMm = 0.5
+
+/** Room around a chart: `ample` leaves the inkjet's margin, `exact` is a film cut for it, `tight` is in between. */
+interface WayToLie extends SizeMm { room: 'ample' | 'exact' | 'tight' }
+
+/** The ways round that a sheet can lie for a chart, the better first: as asked before turned where both are as good. */
+export function waysToLie(page: SizeMm, { widthMm, heightMm }: SizeMm): WayToLie[] {
+  const ways = [{ widthMm, heightMm }, { widthMm: heightMm, heightMm: widthMm }].flatMap((sheet): WayToLie[] => {
+    const [across, down] = [sheet.widthMm - page.widthMm, sheet.heightMm - page.heightMm]
+    const [least, most] = [Math.min(across, down), Math.max(across, down)]
+    if (least < -1e-6) return []
+    return [{ ...sheet, room: most <= exactMm ? 'exact' : least >= 2 * inkjetMarginMm ? 'ample' : 'tight' }]
+  })
+  return [...ways.filter(way => way.room !== 'tight'), ...ways.filter(way => way.room === 'tight')]
+}
+
 /**
- * The sheet as it has to lie for a chart: as asked, or on its other side where the chart fits only so.
+ * The sheet as it has to lie for a chart: as asked, or on its other side where the chart fits better so.
  * @throws ComputeError `invalid_input` when it fits neither way.
  */
-export function sheetFor(page: SizeMm, { widthMm, heightMm }: SizeMm): SizeMm {
-  const slack = 1e-6
-  const fits = (width: number, height: number): boolean => page.widthMm <= width + slack && page.heightMm <= height + slack
-  if (fits(widthMm, heightMm)) return { widthMm, heightMm }
-  if (fits(heightMm, widthMm)) return { widthMm: heightMm, heightMm: widthMm }
-  throw new ComputeError('invalid_input', `This takes ${page.widthMm} × ${page.heightMm} mm of film; ${widthMm} × ${heightMm} mm is too small for it.`,
-    [{ path: 'page', message: `At least ${page.widthMm} × ${page.heightMm} mm.` }])
+export function sheetFor(page: SizeMm, asked: SizeMm): SizeMm {
+  const [way] = waysToLie(page, asked)
+  if (!way) {
+    throw new ComputeError('invalid_input', `This takes ${page.widthMm} × ${page.heightMm} mm of film; ${asked.widthMm} × ${asked.heightMm} mm is too small for it.`,
+      [{ path: 'page', message: `At least ${page.widthMm} × ${page.heightMm} mm.` }])
+  }
+  return { widthMm: way.widthMm, heightMm: way.heightMm }
 }
 
 /**

@@ -137,6 +137,11 @@ describe('an exposure strip', () => {
     expect(stripExposures({ ...strip, firstExposure: 0.5, steps: 5, stopsPerStep: 1 }).slice(0, 5)).toEqual([0.5, 1, 2, 4, 8])
   })
 
+  it('rounds light units to three figures, and refuses steps that a clock can’t tell apart', () => {
+    expect(stripExposures({ ...strip, unit: 'dose', firstExposure: 0.05, steps: 5 }).slice(0, 5)).toEqual([0.05, 0.0707, 0.1, 0.141, 0.2])
+    expect(() => stripExposures({ ...strip, firstExposure: 0.05 })).toThrow(/too short to tell apart/)
+  })
+
   it('prints beside each window its step and when the card covers it', () => {
     const { page } = chartOf(plans.strip, 360)
     const text = (id: string) => page.labels.find(label => label.id === id)?.text

@@ -3,6 +3,7 @@ import { bandsMm } from '#shared/calibration/wedge/frame'
 import { numberedLevels, numberedPage } from '#shared/calibration/wedge/numbered-page'
 import type { RectMm, WedgePage } from '#shared/calibration/wedge/page'
 import { gridForSheet, scatteredGrids, scatteredPage } from '#shared/calibration/wedge/scattered-page'
+import { sheetFor } from '#shared/calibration/wedge/sheet'
 import { snapWedgePage } from '#shared/calibration/wedge/snap'
 
 const pages: [string, WedgePage][] = [
@@ -83,8 +84,17 @@ describe('sizes', () => {
 
   it.each([
     [210, 297, 24, 24], [297, 210, 24, 24], [215.9, 279.4, 24, 24], [210, 148.5, 24, 16], [200, 138, 24, 16], [127, 178, 16, 12],
+    [203.2, 254, 24, 24], [203, 198, 16, 12], [145, 111, 16, 12],
   ])('chooses for a sheet of %d × %d mm the grid of %d × %d', (width, height, columns, rows) => {
     expect(gridForSheet(width, height)).toEqual({ columns, rows })
+  })
+
+  it('lays a sheet the way round that leaves an inkjet its margin', () => {
+    const page = scatteredPage({ columns: 24, rows: 16 })
+    expect(sheetFor(page, { widthMm: 210, heightMm: 297 })).toEqual({ widthMm: 210, heightMm: 297 })
+    expect(sheetFor(page, { widthMm: 203.2, heightMm: 254 })).toEqual({ widthMm: 254, heightMm: 203.2 })
+    expect(sheetFor(page, { widthMm: 138, heightMm: 200 })).toEqual({ widthMm: 200, heightMm: 138 })
+    expect(() => sheetFor(page, { widthMm: 199, heightMm: 150 })).toThrow(/takes 200 × 138 mm/)
   })
 
   it('refuses a sheet that no wedge fits, naming the least size', () => {
