@@ -54,7 +54,7 @@ export function exposureStripPage(grid: WedgeGrid, strip: Strip): WedgePage {
       grounds.push({ place: rect(x + pitch - barMm, y, barMm, windowMm), ink: 'full' })
       patches.push(rect(x, y, pitch - barMm, windowMm))
       labels.push(line(`step-${i}`, x, top, pitch - barMm / 2, String(row === 0 ? column + 1 : strip.steps - column)))
-      labels.push(line(`time-${i}`, x, top + lineMm, pitch - barMm / 2, formatExposure(exposures[i]!, strip.unit)))
+      labels.push(line(`time-${i}`, x, top + lineMm, pitch - barMm / 2, formatStripExposure(exposures[i]!, strip.unit)))
     }
     return { columns: strip.steps, rows: 2, patches, grounds, labels }
   })
@@ -65,10 +65,8 @@ const line = (id: string, xMm: number, yMm: number, widthMm: number, text: strin
 const head = ({ xMm, yMm, widthMm }: RectMm): PageLabel =>
   line('cards', xMm, yMm, widthMm, 'Cover each window when its time is up: above with a card from the left, below with one from the right.')
 
-/** `85 s`, `2 min 50 s`, or light units as they are. */
-export function formatExposure(exposure: number, unit: Strip['unit']): string {
+/** `85 s`, `2:50 min`, or light units as they are. */
+export function formatStripExposure(exposure: number, unit: Strip['unit']): string {
   if (unit === 'dose') return String(exposure)
-  if (exposure < 120) return `${exposure} s`
-  const seconds = exposure % 60
-  return `${Math.floor(exposure / 60)} min${seconds === 0 ? '' : ` ${seconds} s`}`
+  return exposure < 120 ? `${exposure} s` : `${Math.floor(exposure / 60)}:${String(exposure % 60).padStart(2, '0')} min`
 }
