@@ -29,6 +29,8 @@ export const settingsSchema = z.object({
   IMAGE_CHILD_PROGRAM: z.string().min(1),
   CHILD_ADDRESS_SPACE_BYTES: z.coerce.number().int().positive().default(8_000_000_000),
   CHILD_TIMEOUT_SECONDS: seconds(180),
+  /** how long the answer to a scan's upload waits for its reading */
+  READING_WAIT_SECONDS: seconds(5),
   /** how often an open stream of hints is asked whether its person may still listen */
   HINT_RECHECK_SECONDS: seconds(60),
   LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error']).default('info'),

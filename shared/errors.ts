@@ -34,6 +34,8 @@ export const errorCodes = {
   levels_unrelated: [422, 'Levels unrelated'],
   wedge_not_found: [422, 'Wedge not found'],
   other_wedge: [409, 'Other wedge'],
+  wedge_unknown: [422, 'Wedge unknown'],
+  code_unreadable: [422, 'Code unreadable'],
   reading_unfit: [422, 'Reading unfit'],
   too_many_requests: [429, 'Too many requests'],
   disk_full: [507, 'Disk full'],

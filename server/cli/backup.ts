@@ -14,7 +14,9 @@ async function namedFiles(client: pg.Client): Promise<NamedFile[]> {
   const photos = await client.query<{ studio_id: string, id: string, sha256: string }>('select studio_id, id, sha256 from photos order by studio_id, id')
   const renders = await client.query<{ studio_id: string, render_key: string, format: string, sha256: string }>(
     `select studio_id, render_key, format, sha256 from renders where state = 'ready' order by studio_id, render_key`)
+  const scans = await client.query<{ studio_id: string, id: string, file_sha256: string }>('select studio_id, id, file_sha256 from readings where file_sha256 is not null order by studio_id, id')
   return [
+    ...scans.rows.map(row => ({ key: storageKeys.scan(row.studio_id, row.id), sha256: row.file_sha256, mayBeMissing: false })),
     ...photos.rows.map(row => ({ key: storageKeys.original(row.studio_id, row.id), sha256: row.sha256, mayBeMissing: false })),
     ...renders.rows.map(row => ({ key: storageKeys.film(row.studio_id, row.render_key, row.format), sha256: row.sha256, mayBeMissing: true })),
   ]

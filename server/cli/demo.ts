@@ -8,7 +8,7 @@ import { enterStudio, type StudioAccess } from '../services/access'
 import { recordEvent } from '../services/audit'
 import { createBench, listBenches } from '../services/benches'
 import { createCurve, useCurve } from '../services/curves'
-import { closeImageChild } from '../services/image-child'
+import { closeImageChildren } from '../services/image-child'
 import { register, signIn, studiosOf } from '../services/people'
 import { createReading, listReadings } from '../services/readings'
 
@@ -88,6 +88,6 @@ makeDemo(process.env.DEMO_PASSWORD!).then((made) => {
   process.stderr.write(`${error.stack}\n`)
   process.exitCode = 1
 }).finally(async () => {
-  await closeImageChild()
+  await closeImageChildren()
   await closeDatabase()
 })

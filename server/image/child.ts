@@ -7,13 +7,17 @@ import { fitCurve } from './work/fit'
 import { makeForecast } from './work/forecast'
 import { probePicture } from './work/probe'
 import { makeProxy } from './work/proxy'
+import { identifyScan, makeScanPicture, readScan } from './work/scan'
 import { makeThumbnail } from './work/thumbnail'
 import { makeWedgeFilm } from './work/wedge-film'
 import { makeWedgePreview } from './work/wedge-preview'
 
 type Work = { [K in keyof ImageCalls]: (input: ImageCalls[K]['in'], onProgress: (fraction: number) => void) => Promise<ImageCalls[K]['out']> }
 
-const work: Work = { probe: probePicture, thumbnail: makeThumbnail, proxy: makeProxy, film: makeFilm, wedgeFilm: makeWedgeFilm, wedgePreview: makeWedgePreview, forecast: makeForecast, fitCurve }
+const work: Work = {
+  probe: probePicture, thumbnail: makeThumbnail, proxy: makeProxy, film: makeFilm, wedgeFilm: makeWedgeFilm, wedgePreview: makeWedgePreview, forecast: makeForecast, fitCurve,
+  identifyScan, readScan, scanPicture: makeScanPicture,
+}
 
 /** The parent hears of progress about ten times a second at most. */
 const progressEveryMs = 100

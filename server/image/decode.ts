@@ -1,4 +1,4 @@
-import sharp from 'sharp'
+import sharp, { type Sharp } from 'sharp'
 import type { Vector3 } from '#shared/tone/matrix'
 import { readProfile } from './colour/icc-profile'
 import { displayP3Light, lightTables, srgbGreyLight, srgbLight, type WorkingLight, workingLightOf } from './colour/working-light'
@@ -20,7 +20,7 @@ export interface StoredPicture {
 }
 
 /** How the stored codes become light, and whether the library has to convert them first. */
-function colourOf(header: PictureHeader): { light: WorkingLight, converted: boolean } {
+export function colourOf(header: PictureHeader): { light: WorkingLight, converted: boolean } {
   const profile = header.icc && readProfile(header.icc)
   if (header.colour === 'cmyk' || (profile?.kind === 'other' && header.colour === 'rgb')) return { light: displayP3Light, converted: true }
   if (profile && profile.kind === header.colour) return { light: workingLightOf(profile), converted: false }
@@ -36,7 +36,7 @@ function asStored(path: string, header: PictureHeader) {
   return picture.toColourspace(header.colour === 'grey' && !header.alpha ? 'b-w' : 'srgb').raw()
 }
 
-const asDisplayP3 = (path: string) => sharp(path, inputOptions).toColourspace('rgb16').withIccProfile('p3').raw({ depth: 'ushort' })
+export const asDisplayP3 = (path: string): Sharp => sharp(path, inputOptions).toColourspace('rgb16').withIccProfile('p3').raw({ depth: 'ushort' })
 
 /** Runs the decoder; what it can't read is the picture's fault and said so. */
 export async function orUnreadable<T>(decoding: Promise<T>): Promise<T> {

@@ -1,9 +1,14 @@
 import type { CurveFit, CurveReading } from '#shared/calibration/curve-fit'
+import type { Point } from '#shared/calibration/reading/picture'
+import type { ReadingQuality } from '#shared/calibration/reading/quality'
+import type { ScanReport } from '#shared/calibration/reading/read-scan'
+import type { WedgePage } from '#shared/calibration/wedge/page'
 import type { WedgePlan } from '#shared/calibration/wedge/plan'
 import type { ReadingChannel } from '#shared/schemas/benches'
 import type { Aim } from '#shared/schemas/curves'
 import type { PaletteKind } from '#shared/tone/palettes'
 import type { Adjustments, FilmFormat } from '#shared/schemas/negatives'
+import type { PictureFormat, PictureHeader } from './header/header'
 
 /** What stands in a picture file's header, read before anything is decoded. */
 export interface PictureFacts {
@@ -64,6 +69,23 @@ export interface WedgeFilmOrder {
   title: string
 }
 
+/** What a scan's file says, and the wedge that it shows. */
+export interface IdentifiedScan {
+  format: PictureFormat
+  device: PictureHeader['device']
+  /** pixels of the upright picture */
+  width: number
+  height: number
+  /** the code on the film, where it could be read */
+  code: string | null
+  /** whether one of the pages was found in the picture */
+  found: boolean
+}
+/** Centres of the corner markers, put by hand. */
+export type Corners = [Point, Point, Point, Point]
+
+type WithoutPage<T> = T extends { page: unknown } ? Omit<T, 'page'> : T
+
 /** Calls to an image child; paths are absolute. Each answers or fails with a ComputeError's code. */
 export interface ImageCalls {
   /** header, budget, and one reading of all the data: what is cut off or broken is refused here */
@@ -82,4 +104,10 @@ export interface ImageCalls {
   forecast: { in: { path: string, target: string, order: FilmOrder, width: number, state: 'photo' | 'film' | 'print', palette: PaletteKind }, out: { width: number, height: number } }
   /** `fitCurve` of shared/calibration: too long for the process that answers requests */
   fitCurve: { in: { readings: CurveReading[], channel: ReadingChannel }, out: CurveFit }
+  /** decodes a scan and looks for its code; the picture is kept for the `readScan` that follows */
+  identifyScan: { in: { path: string, pages: WedgePage[], corners?: Corners }, out: IdentifiedScan }
+  /** every patch of the wedge whose page and levels are given */
+  readScan: { in: { path: string, page: WedgePage, levels: number[] | null, corners?: Corners, quality?: ReadingQuality, paperLightness?: number }, out: WithoutPage<ScanReport> }
+  /** upright JPEG of a scan; `cells` are corners of the patches' read parts in its full pixels, x and y in turn */
+  scanPicture: { in: { path: string, target: string, width: number, cells?: number[][] }, out: { width: number, height: number } }
 }

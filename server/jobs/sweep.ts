@@ -1,7 +1,7 @@
-import { and, eq, ne, sql } from 'drizzle-orm'
+import { and, eq, isNotNull, ne, sql } from 'drizzle-orm'
 import { readSettings } from '../config'
 import { db } from '../db/client'
-import { photos, renders } from '../db/schema'
+import { photos, readings, renders } from '../db/schema'
 import { storage } from '../services/storage'
 import { storageKeys } from '../storage'
 
@@ -34,6 +34,20 @@ export async function sweepFilms(leaseSeconds: number): Promise<string[]> {
   const files = (await storage().list('films')).filter(olderThan(2 * leaseSeconds))
   const rows = await db().select({ studioId: renders.studioId, key: renders.renderKey, format: renders.format }).from(renders).where(ne(renders.state, 'failed'))
   const named = new Set(rows.map(row => storageKeys.film(row.studioId, row.key, row.format)))
+  const orphans = files.map(({ key }) => key).filter(key => !named.has(key))
+  for (const key of orphans) await storage().remove(key)
+  return orphans
+}
+
+/** An upload's file stands before its row for moments, not for this long. */
+const unrecordedScanSeconds = 3600
+
+/** Removes scans that no row names: web died between putting one in place and recording it, or between removing a row and its file. */
+export async function sweepScans(): Promise<string[]> {
+  const files = (await storage().list('scans')).filter(olderThan(unrecordedScanSeconds))
+  if (files.length === 0) return []
+  const rows = await db().select({ studioId: readings.studioId, id: readings.id }).from(readings).where(isNotNull(readings.fileSha256))
+  const named = new Set(rows.map(row => storageKeys.scan(row.studioId, row.id)))
   const orphans = files.map(({ key }) => key).filter(key => !named.has(key))
   for (const key of orphans) await storage().remove(key)
   return orphans

@@ -3,13 +3,14 @@ import { setTimeout as sleep } from 'node:timers/promises'
 import PgBoss from 'pg-boss'
 import type { Settings } from '../config'
 import { openDatabase } from '../db/client'
-import { closeImageChild } from '../services/image-child'
+import { closeImageChildren } from '../services/image-child'
 import { jobHandlers, requireHandlers, type JobContext, type JobHandler } from './handlers'
+import { type LeaseSettings, type Report, workOnNext } from './leased-work'
 import { jobNames, type JobName } from './names'
-import { makeNextRender } from './render-work'
-import { shrinkFilmCache, shrinkPictureCache, sweepFilms, sweepTemporaryFiles } from './sweep'
+import { readingWork } from './reading-work'
+import { filmWork } from './render-work'
+import { shrinkFilmCache, shrinkPictureCache, sweepFilms, sweepScans, sweepTemporaryFiles } from './sweep'
 
-export type Report = (event: string, details: Record<string, unknown>) => void
 export interface Worker { stop: () => Promise<void> }
 
 /** Work under way may end by itself for this long when the worker is told to stop. */
@@ -17,23 +18,27 @@ const graceSeconds = 10
 const tidySeconds = 600
 
 /**
- * Makes films one after the other, as the rows ask for it: woken by jobs, and looking by itself every few seconds for
+ * Makes films one after the other, and beside them reads scans one after the other, as the rows ask for it: woken by jobs, and looking by itself every few seconds for
  * what a job did not announce (a row whose worker died). Sweeps what dead processes have left.
  */
 export async function runWorker(settings: Settings, report: Report = () => {}): Promise<Worker> {
   requireHandlers()
   openDatabase(settings.DATABASE_URL)
-  const alarm = openAlarm()
-  const boss = await listenForJobs(settings.DATABASE_URL, { wake: alarm.ring }, report)
+  const alarms = { films: openAlarm(), readings: openAlarm() }
+  const boss = await listenForJobs(settings.DATABASE_URL, { wake: kind => alarms[kind].ring() }, report)
   const noMore = new AbortController()
   const breakOff = new AbortController()
   const owner = `${hostname().slice(0, 30).replace(/[^\w-]/g, '-')}-${process.pid}-${crypto.randomUUID().slice(0, 8)}`
-  const lease = { owner, leaseSeconds: settings.LEASE_SECONDS, renewSeconds: settings.LEASE_RENEW_SECONDS }
+  const lease: LeaseSettings = { owner, leaseSeconds: settings.LEASE_SECONDS, renewSeconds: settings.LEASE_RENEW_SECONDS }
 
   const films = forever(noMore.signal, report, async () => {
-    const made = await makeNextRender(lease, breakOff.signal, report)
+    const made = await workOnNext(filmWork, lease, breakOff.signal, report)
     if (made) await shrinkFilmCache(settings.RENDER_CACHE_MAX_BYTES)
-    else await alarm.next(settings.POLL_SECONDS, noMore.signal)
+    else await alarms.films.next(settings.POLL_SECONDS, noMore.signal)
+  })
+  const scans = forever(noMore.signal, report, async () => {
+    const read = await workOnNext(readingWork, lease, breakOff.signal, report)
+    if (!read) await alarms.readings.next(settings.POLL_SECONDS, noMore.signal)
   })
   const sweeping = forever(noMore.signal, report, async () => {
     const swept = await sweepTemporaryFiles(settings.LEASE_SECONDS)
@@ -43,6 +48,8 @@ export async function runWorker(settings: Settings, report: Report = () => {}): 
   const tidying = forever(noMore.signal, report, async () => {
     const orphans = await sweepFilms(settings.LEASE_SECONDS)
     if (orphans.length) report('sweep.films', { files: orphans.length })
+    const scansLeft = await sweepScans()
+    if (scansLeft.length) report('sweep.scans', { files: scansLeft.length })
     await shrinkPictureCache(settings.PICTURE_CACHE_MAX_BYTES)
     await pause(tidySeconds, noMore.signal)
   })
@@ -52,9 +59,9 @@ export async function runWorker(settings: Settings, report: Report = () => {}): 
       noMore.abort()
       await boss.stop({ graceful: false })
       const late = setTimeout(() => breakOff.abort(), 1000 * graceSeconds)
-      await Promise.all([films, sweeping, tidying])
+      await Promise.all([films, scans, sweeping, tidying])
       clearTimeout(late)
-      await closeImageChild()
+      await closeImageChildren()
     },
   }
 }

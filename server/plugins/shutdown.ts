@@ -2,7 +2,7 @@ import { closeDatabase } from '../db/client'
 import { log } from '../log'
 import { stopHints } from '../services/hint-hub'
 import { noteStopping } from '../services/health'
-import { closeImageChild } from '../services/image-child'
+import { closeImageChildren } from '../services/image-child'
 
 /**
  * The order of an end: say that we aren't ready and end the event streams (an open one would keep its connection);
@@ -17,7 +17,7 @@ export default defineNitroPlugin((nitro) => {
     })
   }
   nitro.hooks.hook('close', async () => {
-    await closeImageChild()
+    await closeImageChildren()
     await closeDatabase()
     log('info', 'web.stopped')
   })

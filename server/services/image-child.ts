@@ -1,24 +1,29 @@
 import { readSettings } from '../config'
 import { openImageChild, type ImageChild } from '../image/pool'
 
-/** Somebody waits at a screen for web's answers; a film may take its time. */
-const filmNiceness = 10
+/** How far each child steps back: somebody waits at a screen for web's answers and for a reading; a film may take its time. */
+const niceness = { interactive: 0, readings: 0, films: 10 } as const
 
-let opened: ImageChild | undefined
+const opened = new Map<keyof typeof niceness, ImageChild>()
 
-/** The process's one image child, for interactive work. */
-export const imageChild = (): ImageChild => opened ??= open(0)
+/** Web's one image child, for interactive work. */
+export const imageChild = (): ImageChild => childFor('interactive')
 
-/** The worker's one image child, for films: it steps back before web. */
-export const filmChild = (): ImageChild => opened ??= open(filmNiceness)
+/** The worker's two: one for films, which steps back before all others, and one for readings. */
+export const filmChild = (): ImageChild => childFor('films')
+export const readingChild = (): ImageChild => childFor('readings')
 
-function open(niceness: number): ImageChild {
+function childFor(work: keyof typeof niceness): ImageChild {
+  const known = opened.get(work)
+  if (known) return known
   const { IMAGE_CHILD_PROGRAM, CHILD_ADDRESS_SPACE_BYTES, CHILD_TIMEOUT_SECONDS } = readSettings()
-  return openImageChild({ programPath: IMAGE_CHILD_PROGRAM, addressSpaceBytes: CHILD_ADDRESS_SPACE_BYTES, timeoutSeconds: CHILD_TIMEOUT_SECONDS, niceness })
+  const child = openImageChild({ programPath: IMAGE_CHILD_PROGRAM, addressSpaceBytes: CHILD_ADDRESS_SPACE_BYTES, timeoutSeconds: CHILD_TIMEOUT_SECONDS, niceness: niceness[work] })
+  opened.set(work, child)
+  return child
 }
 
-export async function closeImageChild(): Promise<void> {
-  const closing = opened
-  opened = undefined
-  await closing?.close()
+export async function closeImageChildren(): Promise<void> {
+  const closing = [...opened.values()]
+  opened.clear()
+  await Promise.all(closing.map(child => child.close()))
 }

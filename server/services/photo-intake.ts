@@ -1,11 +1,10 @@
-import { and, eq, sql } from 'drizzle-orm'
+import { and, eq } from 'drizzle-orm'
 import { v7 as uuidv7 } from 'uuid'
 import type { z } from 'zod'
 import { ComputeError } from '#shared/errors'
 import type { Photo, refusedFile } from '#shared/schemas/photos'
-import { readSettings } from '../config'
 import { db, type Queryable, type Transaction } from '../db/client'
-import { photos, studios } from '../db/schema'
+import { photos } from '../db/schema'
 import type { PictureFacts } from '../image/protocol'
 import { storageKeys, type TemporaryFile } from '../storage'
 import type { StudioAccess } from './access'
@@ -14,6 +13,7 @@ import { nameFromFileName } from './file-names'
 import { hint } from './hints'
 import { imageChild } from './image-child'
 import { setBinned, showPhoto, type PhotoRow } from './photos'
+import { requireRoom } from './room'
 import { storage } from './storage'
 
 export const thumbnailLongerSidePixels = 480
@@ -27,35 +27,6 @@ export interface Intake { items: Photo[], refused: Refused[], anyNew: boolean }
 /** The label of an arriving photo's temporary file: a sweep learns from it what was in the making. */
 export const arrivalLabel = (studioId: string, photoId: string) => `photo_${studioId}_${photoId}`
 export const newPhotoId = (): string => uuidv7()
-
-/** Keeps count, piece by piece, of what the studio may still store and the disk still takes; throws where either ends. */
-export async function roomFor(studio: StudioAccess, expectedBytes: number): Promise<{ take: (bytes: number) => Promise<void> }> {
-  const [row] = await db().select({ maxBytes: studios.maxBytes }).from(studios).where(eq(studios.id, studio.id))
-  let studioBytes = row!.maxBytes - await bytesUsed(db(), studio.id)
-  let unchecked = 0
-  const checkDisk = async () => {
-    unchecked = 0
-    if (await storage().freeBytes() - expectedBytes < readSettings().FREE_DISK_MIN_BYTES) throw diskFull()
-    expectedBytes = 0
-  }
-  await checkDisk()
-  return {
-    async take(bytes) {
-      studioBytes -= bytes
-      unchecked += bytes
-      if (studioBytes < 0) throw studioFull()
-      if (unchecked > 32e6) await checkDisk()
-    },
-  }
-}
-
-const studioFull = () => new ComputeError('studio_full', 'The studio has no room left for this picture. Ask its owner for more, or erase what is no longer needed.')
-export const diskFull = () => new ComputeError('disk_full', 'The disk of this installation is nearly full, so this picture was not stored. Tell the studio’s owner.')
-
-async function bytesUsed(on: Queryable, studioId: string): Promise<number> {
-  const [row] = await on.select({ used: sql<string>`coalesce(sum(${photos.bytes}), 0)` }).from(photos).where(eq(photos.studioId, studioId))
-  return Number(row!.used)
-}
 
 /** Takes what is good; what is not is named with its reason. Throws the first reason when nothing could be taken. */
 export async function takePhotos(studio: StudioAccess, arrivals: Arrival[]): Promise<Intake> {
@@ -102,10 +73,9 @@ async function takePhoto(studio: StudioAccess, arrival: WholeArrival): Promise<{
 
 /** Files first, row last. The row's lock on the studio keeps its limit, and equal uploads, one after the other. */
 async function store(tx: Transaction, studio: StudioAccess, arrival: WholeArrival, facts: PictureFacts, thumbnail: TemporaryFile) {
-  const [{ maxBytes }] = await tx.select({ maxBytes: studios.maxBytes }).from(studios).where(eq(studios.id, studio.id)).for('no key update') as [{ maxBytes: number }]
+  await requireRoom(tx, studio.id, arrival.bytes)
   const known = await sameBytes(tx, studio, arrival.sha256)
   if (known) return { photo: await bringBack(tx, known), isNew: false }
-  if (await bytesUsed(tx, studio.id) + arrival.bytes > maxBytes) throw studioFull()
 
   const [row] = await tx.insert(photos).values({
     studioId: studio.id, id: arrival.id, uploaderId: studio.personId, name: nameFromFileName(arrival.fileName),

@@ -100,8 +100,9 @@ async function flush(path: string): Promise<void> {
 
 export const storageKeys = {
   original: (studioId: string, photoId: string) => `originals/${studioId}/${photoId}`,
+  scan: (studioId: string, readingId: string) => `scans/${studioId}/${readingId}`,
   thumbnail: (studioId: string, photoId: string) => `cache/${studioId}/${photoId}/thumbnail.jpg`,
-  /** a proxy's, forecast's or wedge preview's bytes, by the hash of what was asked */
+  /** a proxy's, forecast's, wedge preview's or shown scan's bytes, by the hash of what was asked */
   picture: (studioId: string, recordId: string, hash: string) => `cache/${studioId}/${recordId}/${hash}`,
   film: (studioId: string, renderKey: string, format: string) => `films/${studioId}/${renderKey}.${format}`,
 }

@@ -18,6 +18,8 @@ export interface ReceivingRules {
   openTemporary: (id: string) => Promise<TemporaryFile>
   /** called for each piece before it is written; throws when there is no more room */
   takeRoom: (bytes: number) => Promise<void> | void
+  /** hears the parts that are no files */
+  onField?: (name: string, value: string) => void
 }
 
 /** A slow line may need long for a large picture; one that has gone silent is cut. */
@@ -42,6 +44,7 @@ export async function receiveFiles(event: H3Event, rules: ReceivingRules): Promi
     before = arrival.catch(() => {})
     arriving.push(arrival)
   })
+  form.on('field', (name, value) => rules.onField?.(name, value))
   let tooMany = false
   form.on('filesLimit', () => tooMany = true)
 

@@ -6,6 +6,7 @@ import { endpoint, type Endpoint } from './endpoint'
 import { negativeEndpoints } from './negatives'
 import { peopleEndpoints } from './people'
 import { photoEndpoints } from './photos'
+import { scanEndpoints } from './scans'
 import { shelfEndpoints } from './shelf'
 import { wedgeEndpoints } from './wedges'
 
@@ -18,5 +19,5 @@ const serviceEndpoints = {
 
 /** Every route of the service, by name. Validation, types and the OpenAPI document all come from here. */
 export const contract = {
-  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...walkEndpoints, ...photoEndpoints, ...negativeEndpoints, ...wedgeEndpoints,
+  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints, ...photoEndpoints, ...negativeEndpoints, ...wedgeEndpoints,
 } satisfies Record<string, Endpoint>

@@ -37,8 +37,8 @@ export const readingEvidence = z.object({
   /** upright, after the file's own orientation tag */
   picture: z.object({ width: z.number().int(), height: z.number().int() }),
   code: z.string().nullable(), pixelsPerInch: z.number(), turnedDegrees: z.number(), mirrored: z.boolean(), inverted: z.boolean(), markersSeen: z.number().int(),
-  /** width of printed edges, 10 to 90 % */
-  edgeWidthMm: z.number(), glareShare: z.number(),
+  /** width of printed edges, 10 to 90 %; null where no marker was seen */
+  edgeWidthMm: z.number().nullable(), glareShare: z.number(),
   /** beside each marker */
   references: z.array(z.object({ fullInk: place, clear: place })),
   diagnostics: z.object({ foil: place, bare: place, uncoated: place }),
@@ -55,6 +55,8 @@ export const reading = z.object({
   wedgeId: id.nullable(), wedgePrintId: id.nullable(), printNumber: z.number().int().nullable(), scannerId: id.nullable(), scannerProfileId: id.nullable(),
   progress: fraction, error: warning.nullable(),
   evidence: readingEvidence.nullable(),
+  /** the scan’s file; sides are the upright picture’s, known once it was looked into */
+  file: z.object({ name: z.string(), bytes: z.number().int(), format: z.enum(['jpeg', 'png', 'tiff', 'heic']).nullable(), width: z.number().int().nullable(), height: z.number().int().nullable() }).nullable(),
 })
 export type Reading = z.infer<typeof reading>
 
@@ -98,10 +100,10 @@ const curves = '/api/studios/:studio/curves/:curve' as const
 export const curveEndpoints = {
   listReadings: endpoint({ method: 'GET', path: `${bench}/readings`, access: 'member', summary: 'Readings of a bench.', query: listQuery, answers: { 200: listOf(reading) } }),
   createReading: endpoint({
-    method: 'POST', path: `${bench}/readings`, access: 'technician', summary: 'Measured values, typed in or imported.',
+    method: 'POST', path: `${bench}/readings`, access: 'technician', summary: 'Measured values, typed in or imported; or a scan, which finds its wedge by the code on it.',
     query: readingQuery, body: readingBody,
-    otherBodies: { 'text/csv': 'A header line `level,lightness|density|reflectance`, then a row a patch.', 'text/plain': 'CGATS text (ISO 28178) with a level column and LAB_L, D_VIS or a reflectance.' },
-    answers: { 200: reading, 201: reading },
+    otherBodies: { 'text/csv': 'A header line `level,lightness|density|reflectance`, then a row a patch.', 'text/plain': 'CGATS text (ISO 28178) with a level column and LAB_L, D_VIS or a reflectance.', 'multipart/form-data': 'The picture of a wedge print as `scan`, with the fields of a wedge’s own readings.' },
+    answers: { 200: reading, 201: reading, 202: reading },
   }),
   reading: endpoint({ method: 'GET', path: '/api/studios/:studio/readings/:reading', access: 'member', summary: 'One reading.', answers: { 200: reading } }),
   listCurves: endpoint({ method: 'GET', path: `${bench}/curves`, access: 'member', summary: 'Curve versions of a bench.', query: listQuery, answers: { 200: listOf(curveBrief) } }),

@@ -4,10 +4,11 @@ import { negativeCases } from './routes/negatives'
 import { peopleCases } from './routes/people'
 import { photoCases } from './routes/photos'
 import type { RouteCase } from './routes/route-case'
+import { scanCases } from './routes/scans'
 import { serviceCases } from './routes/service'
 import { shelfCases } from './routes/shelf'
 import { walkCases } from './routes/walk'
 import { wedgeCases } from './routes/wedges'
 
 /** Every handler of the service, each with a good call of it. What must be refused follows from the contract, or is named. */
-export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...shelfCases, ...benchCases, ...curveCases, ...walkCases, ...photoCases, ...negativeCases, ...wedgeCases]
+export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...shelfCases, ...benchCases, ...curveCases, ...scanCases, ...walkCases, ...photoCases, ...negativeCases, ...wedgeCases]

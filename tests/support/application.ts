@@ -7,12 +7,12 @@ interface Settings { programs: string, databaseUrl: string, storage: string, env
 
 const programsOf = ({ programs }: Settings) => ({ web: webProgram, worker: join(programs, 'worker.mjs') })
 
-/** The settings that tests run with: short leases, answers checked against the contract, no rate limits. */
+/** The settings that tests run with: short leases, patience with readings, answers checked against the contract, no rate limits. */
 function testEnvironment({ programs, databaseUrl, storage, env = {} }: Settings) {
   return {
     ...process.env, NODE_ENV: 'production', DATABASE_URL: databaseUrl, STORAGE_DIR: storage,
     NUXT_SESSION_PASSWORD: 'only-for-tests-only-for-tests-only', IMAGE_CHILD_PROGRAM: join(programs, 'image-child.mjs'),
-    LEASE_SECONDS: '1', LEASE_RENEW_SECONDS: '0.3', POLL_SECONDS: '0.2', CHECK_ANSWERS: 'true', RATE_LIMITS: 'false',
+    LEASE_SECONDS: '1', LEASE_RENEW_SECONDS: '0.3', POLL_SECONDS: '0.2', READING_WAIT_SECONDS: '30', CHECK_ANSWERS: 'true', RATE_LIMITS: 'false',
     FREE_DISK_MIN_BYTES: '0', LOG_LEVEL: 'info', ...env,
   }
 }

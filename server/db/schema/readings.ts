@@ -11,7 +11,14 @@ import { scannerProfiles } from './scanner-profiles'
 import { scanners } from './shelf'
 import { wedgePrints, wedges } from './wedges'
 
-export interface ReadingOrder { corners?: [number, number][], quality?: 'scan' | 'phone' }
+export interface ReadingOrder {
+  corners?: [[number, number], [number, number], [number, number], [number, number]]
+  quality?: 'scan' | 'phone'
+  /** the number pencilled on the print */
+  printNumber?: number
+  /** L* of the bare paper, for phone pictures */
+  paperLightness?: number
+}
 
 export interface StoredPatch { level: number, lightness: number | null, lab: [number, number, number] | null, deviation: number | null, used: boolean }
 
@@ -35,7 +42,11 @@ export const readings = pgTable('readings', {
   fileName: varchar({ length: limits.nameLength }),
   fileBytes: bigint({ mode: 'number' }),
   fileSha256: varchar({ length: 64 }),
-  /** how a person asked for it to be read: corners put by hand, what the picture was taken with */
+  fileFormat: varchar({ length: 8, enum: ['jpeg', 'png', 'tiff', 'heic'] }),
+  /** pixels of the upright picture */
+  fileWidth: integer(),
+  fileHeight: integer(),
+  /** how a person asked for it to be read */
   order: jsonb('reading_order').$type<ReadingOrder>().notNull().default({}),
   corners: jsonb().$type<[number, number][]>(),
   evidence: jsonb().$type<ReadingEvidence>(),

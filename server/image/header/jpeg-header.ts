@@ -1,6 +1,6 @@
+import { type ExifFacts, readExif } from './exif'
 import type { FileWindow } from './file-window'
 import { metadataMaxBytes, type PictureHeader, profileMaxBytes, unreadable } from './header'
-import { readOrientationTag } from './orientation-tag'
 
 // ISO/IEC 10918-1 (JPEG) table B.1: marker codes.
 const startOfScan = 0xDA, endOfImage = 0xD9, app1 = 0xE1, app2 = 0xE2
@@ -42,7 +42,7 @@ class ProfilePieces {
 /** Walks the segments up to the first scan; long ones are stepped over, never loaded. */
 export async function readJpegHeader(window: FileWindow): Promise<PictureHeader> {
   const profile = new ProfilePieces()
-  let orientation = 1
+  let exif: ExifFacts = { orientation: 1, device: null }
   let frame: Frame | undefined
   for (let offset = 2; ;) {
     const head = await window.bytes(offset, 4)
@@ -59,11 +59,11 @@ export async function readJpegHeader(window: FileWindow): Promise<PictureHeader>
     if (marker === app2) profile.add(await window.bytes(offset + 4, length - 2))
     if (marker === app1) {
       const body = await window.bytes(offset + 4, length - 2)
-      if (body.toString('latin1', 0, 6) === 'Exif\0\0') orientation = readOrientationTag(body.subarray(6))
+      if (body.toString('latin1', 0, 6) === 'Exif\0\0') exif = readExif(body.subarray(6))
     }
     offset += 2 + length
     if (offset > metadataMaxBytes) throw unreadable('there is too much beside the picture in it')
   }
   if (!frame) throw unreadable('its header makes no sense')
-  return { format: 'jpeg', bitDepth: 8, alpha: false, orientation, icc: profile.whole(), ...frame }
+  return { format: 'jpeg', bitDepth: 8, alpha: false, ...exif, icc: profile.whole(), ...frame }
 }

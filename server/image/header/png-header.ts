@@ -1,15 +1,15 @@
 import { promisify } from 'node:util'
 import { inflate } from 'node:zlib'
+import { type ExifFacts, readExif } from './exif'
 import type { FileWindow } from './file-window'
 import { metadataMaxBytes, type PictureHeader, profileMaxBytes, unreadable } from './header'
-import { readOrientationTag } from './orientation-tag'
 
 const inflateAll = promisify(inflate)
 
 /** PNG (ISO/IEC 15948) 11.2.2: which bit depths each colour type may have. */
 const depthsOf: Record<number, number[]> = { 0: [1, 2, 4, 8, 16], 2: [8, 16], 3: [1, 2, 4, 8], 4: [8, 16], 6: [8, 16] }
 
-function readImageHeader(chunk: Buffer): Omit<PictureHeader, 'icc' | 'orientation'> {
+function readImageHeader(chunk: Buffer): Omit<PictureHeader, 'icc' | keyof ExifFacts> {
   if (chunk.length < 25) throw unreadable('it is cut off')
   const width = chunk.readUInt32BE(8), height = chunk.readUInt32BE(12), depth = chunk[16]!, colourType = chunk[17]!
   const sound = chunk.toString('latin1', 4, 8) === 'IHDR' && width > 0 && height > 0 && depthsOf[colourType]?.includes(depth)
@@ -31,17 +31,17 @@ async function readProfile(body: Buffer): Promise<Buffer | null> {
 export async function readPngHeader(window: FileWindow): Promise<PictureHeader> {
   const image = readImageHeader(await window.bytes(8, 25))
   let icc: Buffer | null = null
-  let orientation = 1
+  let exif: ExifFacts = { orientation: 1, device: null }
   let alpha = image.alpha
   for (let offset = 33; ;) {
     const head = await window.bytes(offset, 8)
     if (head.length < 8) throw unreadable('it is cut off')
     const length = head.readUInt32BE(0), type = head.toString('latin1', 4, 8)
-    if (type === 'IDAT') return { ...image, alpha, icc, orientation }
+    if (type === 'IDAT') return { ...image, alpha, icc, ...exif }
     if (type === 'IEND' || !/^[A-Za-z]{4}$/.test(type)) throw unreadable('there is no picture in it')
     if (type === 'tRNS') alpha = true
     if (type === 'iCCP' && length <= profileMaxBytes) icc = await readProfile(await window.bytes(offset + 8, length))
-    if (type === 'eXIf' && length <= 65_536) orientation = readOrientationTag(await window.bytes(offset + 8, length))
+    if (type === 'eXIf' && length <= 65_536) exif = readExif(await window.bytes(offset + 8, length))
     offset += 12 + length
     if (offset > metadataMaxBytes) throw unreadable('there is too much beside the picture in it')
   }

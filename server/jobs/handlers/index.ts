@@ -1,12 +1,14 @@
 import { jobNames, type JobName, type JobPayloads } from '../names'
 import { makeRender } from './make-render'
+import { readScan } from './read-scan'
 
 /** What a handler may do: the rows hold the work, so a job wakes who works on them. */
-export interface JobContext { wake: () => void }
+export interface JobContext { wake: (work: 'films' | 'readings') => void }
 export type JobHandler<N extends JobName> = (payload: JobPayloads[N], context: JobContext) => Promise<void> | void
 
 export const jobHandlers: { [N in JobName]: JobHandler<N> } = {
   'make-render': makeRender,
+  'read-scan': readScan,
 }
 
 /** Every job name has exactly one handler, and every handler a name; else the worker must not start. */

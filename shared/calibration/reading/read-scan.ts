@@ -52,7 +52,14 @@ export type ScanReport = { found: false, warnings: ReadingWarning[] } | {
  */
 export function readScan(picture: ScanPicture, pages: readonly WedgePage[], options: ScanOptions = {}): ScanReport {
   const located = options.corners ? locateByCorners(picture, pages[0]!, options.corners) : locateWedge(picture, pages)
-  if (!located) return { found: false, warnings: [readingWarning('not_found')] }
+  return located ? readLocated(picture, located, options) : { found: false, warnings: [readingWarning('not_found')] }
+}
+
+/**
+ * The second half of `readScan`, for a page that was located already; `corners` of the options have done their work then.
+ * @throws ComputeError `invalid_input` when levels do not match the page or hand-put corners span nothing.
+ */
+export function readLocated(picture: ScanPicture, located: LocatedWedge, options: Omit<ScanOptions, 'corners'> = {}): ScanReport & { found: true } {
   const quality = options.quality ?? qualityFromGeometry(located)
   const { levels, paperLightness } = options
   const reading = readWedge(picture, located, { levels, flatField: quality === 'phone', paperLightness: quality === 'phone' ? paperLightness : undefined })

@@ -20,7 +20,7 @@ export const curveCases: RouteCase[] = [
     ],
   },
   {
-    file: 'studios/[studio]/readings/[reading].get.ts', row: 'reading',
+    file: 'studios/[studio]/readings/[reading]/index.get.ts', row: 'reading',
     good: async world => ({ params: { reading: await world.newReading(await world.newBench()) } }),
   },
   { file: `${bench}/curves/index.get.ts`, row: 'listCurves', good: async ({ newBench }) => ({ params: { bench: await newBench() } }) },

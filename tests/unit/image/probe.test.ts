@@ -101,7 +101,7 @@ describe('refused with a sentence and a code', () => {
   })
 
   it('has its limit by kind: 250 million pixels where rows can stream, 150 where the picture must be held', () => {
-    const header = { format: 'jpeg', width: 15_000, height: 15_000, orientation: 1, bitDepth: 8, colour: 'rgb', alpha: false, progressive: false, icc: null } as const
+    const header = { format: 'jpeg', width: 15_000, height: 15_000, orientation: 1, bitDepth: 8, colour: 'rgb', alpha: false, progressive: false, device: null, icc: null } as const
     expect(() => requireWithinBudget(header)).not.toThrow()
     expect(() => requireWithinBudget({ ...header, progressive: true })).toThrow('a progressive JPEG may have 150 million')
     expect(() => requireWithinBudget({ ...header, height: 17_000 })).toThrow('a JPEG may have 250 million')

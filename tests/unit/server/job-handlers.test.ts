@@ -11,9 +11,10 @@ describe('boot check of jobs', () => {
     expect(() => requireHandlers(jobHandlers, [...jobNames, ...jobNames])).toThrow('named twice')
   })
 
-  it('lets a render job wake the worker', () => {
+  it('lets a job wake who does its kind of work', () => {
     const wake = vi.fn()
     void jobHandlers['make-render']({ studioId: 's', renderId: 'r' }, { wake })
-    expect(wake).toHaveBeenCalledOnce()
+    void jobHandlers['read-scan']({ studioId: 's', readingId: 'r' }, { wake })
+    expect(wake.mock.calls).toEqual([['films'], ['readings']])
   })
 })

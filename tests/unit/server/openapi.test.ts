@@ -22,7 +22,7 @@ describe('the OpenAPI document', () => {
   })
   it('describes bodies as they are sent, and other bodies by media type', () => {
     const { requestBody } = document.paths['/api/studios/{studio}/benches/{bench}/readings']!.post!
-    expect(Object.keys(requestBody!.content).sort()).toEqual(['application/json', 'text/csv', 'text/plain'])
+    expect(Object.keys(requestBody!.content).sort()).toEqual(['application/json', 'multipart/form-data', 'text/csv', 'text/plain'])
     expect(requestBody!.content['application/json']!.schema).toMatchObject({ type: 'object', required: ['unit', 'values'] })
   })
   it('names the shape of errors and who may call', () => {

@@ -1,6 +1,7 @@
 import { limits } from '#shared/schemas/limits'
 import { photoEndpoints } from '#shared/schemas/photos'
-import { arrivalLabel, newPhotoId, roomFor, takePhotos } from '../../../../services/photo-intake'
+import { arrivalLabel, newPhotoId, takePhotos } from '../../../../services/photo-intake'
+import { roomFor } from '../../../../services/room'
 import { storage } from '../../../../services/storage'
 import { discardAll, receiveFiles } from '../../../../utils/receive-files'
 

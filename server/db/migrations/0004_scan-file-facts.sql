@@ -1,0 +1,3 @@
+ALTER TABLE "readings" ADD COLUMN "file_format" varchar(8);--> statement-breakpoint
+ALTER TABLE "readings" ADD COLUMN "file_width" integer;--> statement-breakpoint
+ALTER TABLE "readings" ADD COLUMN "file_height" integer;
