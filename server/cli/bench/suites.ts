@@ -3,6 +3,7 @@ import type { Suite } from './suite'
 /** All suites by name; `npm run bench` without a name runs them in this order. */
 export const suites: Record<string, () => Promise<{ run: Suite }>> = {
   calibration: () => import('./calibration'),
+  chain: () => import('./chain'),
   load: () => import('./load'),
   preview: () => import('./preview'),
   render: () => import('./render'),
