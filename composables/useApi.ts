@@ -52,9 +52,14 @@ export function useApi() {
 
 /** Sends files as parts named `file`, telling how much is sent (0…1). */
 export function uploadFiles<const E extends Endpoint>(row: E, params: Params, files: File[], onProgress: (share: number) => void, signal?: AbortSignal): Promise<AnswerOf<E>> {
+  const form = new FormData()
+  for (const file of files) form.append('file', file)
+  return uploadForm(row, params, form, onProgress, signal)
+}
+
+/** Sends a form with files in it, telling how much is sent (0…1). */
+export function uploadForm<const E extends Endpoint>(row: E, params: Params, form: FormData, onProgress: (share: number) => void, signal?: AbortSignal): Promise<AnswerOf<E>> {
   return new Promise((resolve, reject) => {
-    const form = new FormData()
-    for (const file of files) form.append('file', file)
     const request = new XMLHttpRequest()
     request.open(row.method, addressOf(row, params))
     request.responseType = 'json'
