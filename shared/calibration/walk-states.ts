@@ -28,13 +28,13 @@ export interface WalkRecords {
 export const optionalSteps: readonly WalkStep[] = ['ink-trial']
 
 /**
- * Which steps the records show as done. A reading fixes a bench's combination, so with one the path is settled whatever is
- * written of it, and the film has shown that it takes its ink. A further print asks to be read, a further reading to be fitted.
+ * Which steps the records show as done. A wedge print or a reading fixes a bench's combination, so the path is settled whatever is
+ * written of it; a reading shows that the film takes its ink. A further print asks to be read, a further reading to be fitted.
  */
 export function isDoneByRecords(step: WalkStep, records: WalkRecords): boolean {
   const { readings } = records
   return {
-    'path': records.isPathWritten || readings > 0,
+    'path': records.isPathWritten || records.prints > 0 || readings > 0,
     'ink-load': readings > 0,
     'base-exposure': records.hasBaseExposure,
     'ink-trial': records.inkTrialReadings > 0,

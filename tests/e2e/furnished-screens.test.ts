@@ -1,9 +1,10 @@
 import axe from 'axe-core'
 import { readFileSync } from 'node:fs'
 import type { Page } from 'playwright-core'
-import { beforeAll, describe, expect, it } from 'vitest'
+import { beforeAll, describe, expect, it, vi } from 'vitest'
 import { newPage, phone, photograph, useBrowser } from '../support/browser'
 import { newStudio } from '../support/studio'
+import { chartOfRecord, printOfChart, scanFile, scanForm, scanOf } from '../support/wedge-scans'
 
 /** Screens with something on them and something open on them, as they are used: plots, tables, menus, dialogs, pictures. */
 interface Screen { path: (made: Made) => string, then?: (page: Page) => Promise<unknown> }
@@ -19,6 +20,18 @@ const screens: Record<string, Screen> = {
   'a curve as a table': { path: made => `benches/${made.bench}`, then: page => page.getByRole('button', { name: 'As a table' }).click() },
   'a base exposure to enter': { path: made => `benches/${made.bench}`, then: page => page.getByRole('button', { name: 'Enter a new one' }).click() },
   'a starter with its assumptions': { path: made => `benches/${made.starter}`, then: page => page.getByText('rests on assumptions').waitFor() },
+  'a step of the walk with its pictures': { path: made => `benches/${made.bench}/calibrate?step=expose`, then: page => page.getByText('This will be print 2').waitFor() },
+  'a film to put on paper, laid out': { path: made => `benches/${made.bench}/calibrate?step=wedge`, then: page => page.getByRole('img', { name: /^Scattered wedge/ }).waitFor() },
+  'a wedge with its prints': { path: made => `benches/${made.bench}/wedges/${made.wedge}`, then: page => page.getByText('Read a print').waitFor() },
+  'a scan that was read, a cell chosen, the table open': { path: made => `benches/${made.bench}/readings/${made.scan}`, then: async (page) => {
+    await page.getByRole('button', { name: 'As a table' }).click()
+    await page.getByRole('button', { name: 'Show cell 1 in the picture' }).click()
+  } },
+  'corners to put by hand, the loupe over one': { path: made => `benches/${made.bench}/readings/${made.scan}`, then: async (page) => {
+    await page.getByRole('button', { name: 'Cells in the wrong place?' }).click()
+    await page.getByRole('button', { name: /^Top left/ }).focus()
+    await page.locator('.loupe').waitFor()
+  } },
   'a thing on the shelf': { path: () => 'shelf', then: page => page.getByRole('button', { name: /^Change / }).first().click() },
 }
 
@@ -34,9 +47,15 @@ async function furnish() {
   const reading = (await agent.post(`${root}/benches/${bench.id}/readings`, { unit: 'lightness', values })).body
   const curve = (await agent.post(`${root}/benches/${bench.id}/curves`, { readingIds: [reading.id] })).body
   await agent.post(`${root}/curves/${curve.id}/use`)
+  const wedge = (await agent.post(`${root}/benches/${bench.id}/wedges`, { page: { widthMm: 150, heightMm: 115 } })).body
+  const chart = chartOfRecord(wedge)
+  const blue = (lightness: number) => [0, -30 * (1 - lightness / 95)] as const
+  const picture = await scanFile(scanOf(printOfChart(chart), chart, {}, { hue: blue }))
+  const scan = (await agent.call('POST', `${root}/wedges/${wedge.id}/readings`, { body: scanForm(picture) })).body
+  await vi.waitUntil(async () => (await agent.get(`${root}/readings/${scan.id}`)).body.state === 'ready', { timeout: 60_000, interval: 300 })
   const starter = (await agent.post(`${root}/starter-benches`, { process: 'cyanotype' })).body
   await agent.post(`${root}/negatives`, { photoId: photo.id, benchId: bench.id, size: { widthMm: 100, heightMm: 100 } })
-  return { agent, slug: studio.slug as string, photo: photo.id as string, bench: bench.id as string, starter: starter.id as string }
+  return { agent, slug: studio.slug as string, photo: photo.id as string, bench: bench.id as string, wedge: wedge.id as string, scan: scan.id as string, starter: starter.id as string }
 }
 
 /** Counts the pixels of the screen that hold blue light. */
