@@ -57,7 +57,7 @@ function* figures(kind: Kind, list: number[]): Iterable<Measure> {
   const at = (share: number): number => sorted[Math.min(sorted.length - 1, Math.floor(share * sorted.length))]!
   const names = [`${kind}: greatest error of a ramp, median of ${systems} benches`, `${kind}: 95th percentile`] as const
   if (sorted.length < systems) {
-    yield notMeasured(names[0], 'L*', median, 'the service took no scanner profile')
+    yield notMeasured(names[0], 'L*', median, 'scans are not corrected by a scanner profile')
     return
   }
   yield measured(names[0], at(0.5), 'L*', median)
@@ -85,7 +85,8 @@ async function errorsOf(client: Client, scanner: Scanner, seed: number): Promise
   const photo = await upload(client, await rampPhoto(random))
   const errors: [Kind, number][] = []
   const note = async (kind: Kind, file: Buffer, fields: Record<string, string>): Promise<void> => {
-    const readingId = await read(client, wedge.id, file, fields)
+    const { id: readingId, scannerProfileId } = await read(client, wedge.id, file, fields)
+    if (fields.scannerId && !scannerProfileId) return
     errors.push([kind, await rampError(client, bench, { benchId, readingId, photoId: photo })])
   }
   await note('ideal scanner', await scanOf(print, film, 'ideal', seed), {})
@@ -102,14 +103,14 @@ async function scanOf(print: SimulatedPrint, film: { width: number, height: numb
 }
 
 /** Hands a scan in and waits until it is read. */
-async function read(client: Client, wedgeId: string, file: Buffer, fields: Record<string, string>): Promise<string> {
+async function read(client: Client, wedgeId: string, file: Buffer, fields: Record<string, string>): Promise<{ id: string, scannerProfileId?: unknown }> {
   let reading = await client.json('POST', `${client.root}/wedges/${wedgeId}/readings`, scanForm(file, { quality: 'scan', ...fields }, 'wedge.png'))
   while (reading.state === 'waiting' || reading.state === 'making') {
     await sleep(100)
     reading = await client.json('GET', `${client.root}/readings/${reading.id}`)
   }
   if (reading.state !== 'ready') throw new Error(`The scan was not read: ${JSON.stringify(reading.error)}`)
-  return reading.id
+  return reading
 }
 
 async function upload(client: Client, file: Buffer): Promise<string> {
