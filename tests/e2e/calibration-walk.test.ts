@@ -1,9 +1,12 @@
 import type { Page } from 'playwright-core'
+import sharp from 'sharp'
 import { describe, expect, it } from 'vitest'
-import { newPage, phone, useBrowser } from '../support/browser'
+import { centreOf } from '../../shared/calibration/wedge/page'
+import { desk, newPage, phone, useBrowser } from '../support/browser'
 import { newPersonIn } from '../support/people'
+import { flatbed } from '../support/scan-simulator/cameras'
 import { newStudio } from '../support/studio'
-import { chartOfRecord, printOfChart, printTone, scanFile, scanOf } from '../support/wedge-scans'
+import { chartOfRecord, type Chart, newWedge, printOfChart, printTone, scanFile, scanForm, scanOf } from '../support/wedge-scans'
 
 useBrowser()
 
@@ -100,4 +103,47 @@ describe('the walk through a calibration, on a phone', () => {
     await second.page.getByRole('timer').waitFor({ state: 'detached' })
     await Promise.all([first.context.close(), second.context.close()])
   })
+})
+
+/** A scan lying straight, of which only the patches show, and where the corner marks would be. */
+async function scanWithoutMarks(chart: Chart) {
+  const straight = { pixelsPerInch: 200, skewDegrees: 0, warpMm: 0 }
+  const camera = flatbed(chart.page, straight)
+  const { xMm, yMm, widthMm, heightMm } = chart.page.field
+  const [left, top] = camera.toPicture([xMm, yMm]).map(Math.round) as [number, number]
+  const [right, bottom] = camera.toPicture([xMm + widthMm, yMm + heightMm]).map(Math.round) as [number, number]
+  const patches = await sharp(await scanFile(scanOf(printOfChart(chart), chart, straight))).extract({ left, top, width: right - left, height: bottom - top }).toBuffer()
+  const { width, height } = camera
+  const bytes = await sharp({ create: { width, height, channels: 3, background: '#f2efe6' } }).composite([{ input: patches, left, top }]).jpeg({ quality: 93 }).toBuffer()
+  return { bytes, width, height, corners: [0, 1, 2, 3].map(id => camera.toPicture(centreOf(chart.page.markers[id]!.place))) }
+}
+
+it('reads a picture without marks once its four corners are put by hand', async () => {
+  const studio = await newStudio()
+  const { agent, root } = studio
+  const { benchId, wedgeId, chart } = await newWedge(studio)
+  const { bytes, width, height, corners } = await scanWithoutMarks(chart)
+  const reading = (await agent.call('POST', `${root}/wedges/${wedgeId}/readings`, { body: scanForm(bytes) })).body
+  const { page, context, errors } = await newPage({ agent, size: desk })
+  await page.goto(`/s/${studio.studio.slug}/benches/${benchId}/readings/${reading.id}`)
+  await page.getByText('This picture could not be read.').waitFor()
+  await page.getByRole('button', { name: 'Put the corners by hand' }).click()
+  for (const [i, name] of ['Top left', 'Top right', 'Bottom right', 'Bottom left'].entries()) {
+    const handle = page.getByRole('button', { name: new RegExp(`^${name}:`) })
+    const ring = (await handle.boundingBox())!
+    const picture = (await page.getByRole('img', { name: 'The picture with its four corners' }).boundingBox())!
+    await page.mouse.move(ring.x + ring.width / 2, ring.y + ring.height / 2)
+    await page.mouse.down()
+    await page.mouse.move(picture.x + corners[i]![0] / width * picture.width, picture.y + corners[i]![1] / height * picture.height, { steps: 4 })
+    await page.mouse.up()
+  }
+  await page.getByRole('button', { name: 'Bottom left' }).press('ArrowUp')
+  await page.getByRole('button', { name: 'Read it with these corners' }).click()
+  await page.getByText(/192 cells were read/).waitFor({ timeout: 60_000 })
+  const { patches } = (await agent.get(`${root}/readings/${reading.id}`)).body
+  const errorsOfPatches = patches.map((patch: { level: number, lightness: number }) => Math.abs(patch.lightness - printTone(patch.level))).sort((a: number, b: number) => a - b)
+  // half of the patches within the print's own unevenness: a cell off its place would read its neighbour, dozens of L* away
+  expect(errorsOfPatches[96]).toBeLessThan(1.5)
+  expect(errors).toEqual([])
+  await context.close()
 })
