@@ -26,7 +26,7 @@ export interface MeasuredPatch { level: number, lightness: number, lab: [number,
 export interface Measurements { unit: ReadingUnit, zero: Zero, paperLightness: number | null, patches: MeasuredPatch[], warnings: Warning[] }
 
 /** L* of a bright paper, taken when the paper's own is not given. Common practice, no source. */
-const assumedPaperLightness = 95
+export const assumedPaperLightness = 95
 
 /**
  * Measured patches as absolute print lightness: from a JSON body, or from text (CSV with a header, or CGATS text).

@@ -14,7 +14,7 @@ import { greatestCode } from './working-space'
 
 /**
  * A look by name; `dim` shows any lightness in amber for the dim room: its blue is 0; or a bench's own colours, L*a*b* (D50)
- * points by strictly rising or falling L*, whose ends' a* and b* hold beyond them.
+ * points in any order of L*, whose ends' a* and b* hold beyond them.
  */
 export type PaletteKind = Look | 'dim' | readonly LabPoint[]
 
@@ -91,8 +91,11 @@ function pathPixels(kind: PaletteKind): Uint32Array {
 
 const pixelOf = ([red, green, blue]: Rgb8): number => ((255 << 24) | (blue << 16) | (green << 8) | red) >>> 0
 
+/** Points of a path nearer than this in L* are one point, as on a scanned print's plateaus in white and black. */
+const apart = 0.1
+
 function pathColour(given: readonly LabPoint[]): (lightness: number) => LabPoint {
-  const path = [...given].sort((p, q) => p[0] - q[0])
+  const path = [...given].sort((p, q) => p[0] - q[0]).reduce<LabPoint[]>((kept, point) => kept.length > 0 && point[0] - kept.at(-1)![0] < apart ? kept : [...kept, point], [])
   const lightnesses = path.map(point => point[0])
   const a = pchip(lightnesses, path.map(point => point[1]))
   const b = pchip(lightnesses, path.map(point => point[2]))

@@ -4,6 +4,7 @@ import type { Suite } from './suite'
 export const suites: Record<string, () => Promise<{ run: Suite }>> = {
   calibration: () => import('./calibration'),
   chain: () => import('./chain'),
+  exposure: () => import('./exposure'),
   load: () => import('./load'),
   preview: () => import('./preview'),
   render: () => import('./render'),

@@ -20,8 +20,8 @@ export const printQualities = {
 } satisfies Record<string, PrintQuality>
 export type QualityLevel = keyof typeof printQualities
 
-/** A patch to print: its level, its place and how many pixels of 300 per inch are read of it. */
-export interface PatchPlan { level: number, x: number, y: number, xMm: number, yMm: number, pixels: number }
+/** A patch to print: its level, its place and how many pixels of 300 per inch are read of it; `exposure` is log₁₀ of its own exposure over the base exposure. */
+export interface PatchPlan { level: number, x: number, y: number, xMm: number, yMm: number, pixels: number, exposure?: number }
 
 /**
  * Lightness of every patch on one print of a system: coating gradient and mottle, texture, light that falls off from a centre.
@@ -36,9 +36,9 @@ export function printPatches(system: PrintedBench, plan: readonly PatchPlan[], q
   const coatings = plan.map(({ x, y, xMm, yMm }) =>
     perLightness * (quality.gradient * (x * Math.cos(direction) + y * Math.sin(direction)) + quality.mottle * mottle(xMm, yMm)))
   const exposures = withoutMean(plan.map(({ x, y }) => Math.log10(1 - Math.min(0.6, quality.fallOff * ((x - centreX) ** 2 + (y - centreY) ** 2) / 2))))
-  return plan.map(({ level, pixels }, i) => {
+  return plan.map(({ level, pixels, exposure = 0 }, i) => {
     const texture = perLightness * quality.texture / Math.sqrt(pixels) * random.normal()
-    return system.lightness(level, { coating: coatings[i]! + texture, exposure: exposures[i]! })
+    return system.lightness(level, { coating: coatings[i]! + texture, exposure: exposure + exposures[i]! })
   })
 }
 

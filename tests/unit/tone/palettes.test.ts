@@ -37,6 +37,12 @@ describe('print colours', () => {
     expect(buildPaletteTable(path, tones)).not.toEqual(buildPaletteTable('cyanotype', tones))
   })
 
+  it('do not mind a path that wavers where white or black is level', () => {
+    const path = [[22, 4, -24], [22.01, 5, -20], [22.01, 4, -25], [55, -6, -20], [94, 1, 4], [94, 2, 5]] as const
+    expect(Math.abs(labOf(lookColour(path, 40)).l - 40)).toBeLessThan(0.8)
+    expect(lookColour(path, 55)).toEqual(lookColour([path[0], path[3], path[4]], 55))
+  })
+
   it('tell the processes apart: cyanotype is blue, Van Dyke brown, platinum near neutral', () => {
     const middle = (look: typeof looks[number]) => labOf(lookColour(look, 45))
     expect(middle('cyanotype').b).toBeLessThan(-25)
