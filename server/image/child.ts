@@ -2,6 +2,7 @@ import { setImmediate } from 'node:timers/promises'
 import { ComputeError } from '#shared/errors'
 import type { ImageReply } from './pool'
 import type { ImageCalls } from './protocol'
+import { calibrate } from './work/calibrate'
 import { makeFilm } from './work/film'
 import { fitCurve } from './work/fit'
 import { makeForecast } from './work/forecast'
@@ -16,7 +17,7 @@ type Work = { [K in keyof ImageCalls]: (input: ImageCalls[K]['in'], onProgress: 
 
 const work: Work = {
   probe: probePicture, thumbnail: makeThumbnail, proxy: makeProxy, film: makeFilm, wedgeFilm: makeWedgeFilm, wedgePreview: makeWedgePreview, forecast: makeForecast, fitCurve,
-  identifyScan, readScan, scanPicture: makeScanPicture,
+  identifyScan, readScan, scanPicture: makeScanPicture, ...calibrate,
 }
 
 /** The parent hears of progress about ten times a second at most. */

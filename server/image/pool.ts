@@ -41,7 +41,7 @@ interface Job {
 }
 
 /** Someone waits at a screen for these; a long film waits behind them. */
-const interactive = new Set<keyof ImageCalls>(['probe', 'thumbnail', 'proxy', 'forecast', 'wedgePreview', 'fitCurve', 'scanPicture'])
+const interactive = new Set<keyof ImageCalls>(['probe', 'thumbnail', 'proxy', 'forecast', 'wedgePreview', 'fitCurve', 'scanPicture', 'findBaseExposure', 'splitFilm', 'curveThroughFilm', 'evenness', 'checkCurve', 'readInkTrial'])
 
 const childFailed = (why: string) =>
   new ComputeError('image_child_failed', `The picture could not be worked on: ${why}. Try again; if it happens again, try a smaller picture or film.`)

@@ -1,7 +1,13 @@
+import type { BaseExposure, ExposureGoal, ExposureValue } from '#shared/calibration/base-exposure'
+import type { CheckPatch, CurveCheck } from '#shared/calibration/curve-check'
 import type { CurveFit, CurveReading } from '#shared/calibration/curve-fit'
+import type { Evenness, EvennessPatch } from '#shared/calibration/evenness'
+import type { BandedResponse, FilmDensity } from '#shared/calibration/film-densities'
+import type { InkTrial, TrialPatch } from '#shared/calibration/ink-trial'
 import type { Point } from '#shared/calibration/reading/picture'
 import type { ReadingQuality } from '#shared/calibration/reading/quality'
 import type { ScanReport } from '#shared/calibration/reading/read-scan'
+import type { TabletStep } from '#shared/calibration/step-tablet'
 import type { WedgePage } from '#shared/calibration/wedge/page'
 import type { WedgePlan } from '#shared/calibration/wedge/plan'
 import type { ReadingChannel } from '#shared/schemas/benches'
@@ -69,6 +75,9 @@ export interface WedgeFilmOrder {
   title: string
 }
 
+/** A patch of a wedge for what it tells besides its tone. */
+export interface PlacedPatch extends EvennessPatch { tone?: number }
+
 /** What a scan's file says, and the wedge that it shows. */
 export interface IdentifiedScan {
   format: PictureFormat
@@ -110,4 +119,11 @@ export interface ImageCalls {
   readScan: { in: { path: string, page: WedgePage, levels: number[] | null, corners?: Corners, quality?: ReadingQuality, paperLightness?: number }, out: WithoutPage<ScanReport> }
   /** upright JPEG of a scan; `cells` are corners of the patches' read parts in its full pixels, x and y in turn */
   scanPicture: { in: { path: string, target: string, width: number, cells?: number[][] }, out: { width: number, height: number } }
+  /** the calculations of shared/calibration that take a tenth of a second and more */
+  findBaseExposure: { in: { values: ExposureValue[], goal: ExposureGoal }, out: BaseExposure }
+  splitFilm: { in: { wedge: BandedResponse, steps: TabletStep[] }, out: FilmDensity[] }
+  curveThroughFilm: { in: { film: FilmDensity[], steps: TabletStep[] }, out: { response: number[], low: number[], high: number[] } }
+  evenness: { in: { patches: PlacedPatch[] }, out: Evenness }
+  checkCurve: { in: { patches: CheckPatch[], curve: { aim: Aim, black: number, white: number } }, out: CurveCheck }
+  readInkTrial: { in: { patches: TrialPatch[], names: string[], foilLightness?: number }, out: InkTrial }
 }

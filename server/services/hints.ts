@@ -2,7 +2,7 @@ import { sql } from 'drizzle-orm'
 import type { Queryable } from '../db/client'
 
 export const hintChannel = 'emulside_hints'
-export const hintTopics = ['papers', 'sensitizers', 'films', 'inkjets', 'lamps', 'scanners', 'benches', 'base-exposures', 'wedges', 'wedge-prints', 'readings', 'curves', 'walk', 'photos', 'negatives', 'renders', 'people', 'studio'] as const
+export const hintTopics = ['papers', 'sensitizers', 'films', 'inkjets', 'lamps', 'scanners', 'benches', 'base-exposures', 'wedges', 'wedge-prints', 'readings', 'curves', 'walk', 'tablets', 'film-densities', 'scanner-profiles', 'photos', 'negatives', 'renders', 'people', 'studio'] as const
 export type HintTopic = typeof hintTopics[number]
 
 /** Says that a record has changed, without its content. */

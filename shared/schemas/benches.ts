@@ -65,8 +65,25 @@ export const bench = z.object({
 })
 export type Bench = z.infer<typeof bench>
 
-/** Seconds are null for an exposure in light units; low and high are null where it was typed in. */
-const baseExposure = z.object({ id, value: z.number(), unit: exposureUnit, exposureSeconds: z.number().nullable(), exposureSecondsLow: z.number().nullable(), exposureSecondsHigh: z.number().nullable(), createdAt: instant })
+const strip = z.array(z.strictObject({ exposureSeconds: z.number().positive().max(1e6), lightness: z.number().min(0).max(100) })).min(1).max(500)
+/** What the base exposure is the shortest for: full black, a gum layer that survives its development, a density of a printing-out print. */
+export const exposureGoal = z.discriminatedUnion('kind', [
+  z.strictObject({ kind: z.literal('full-black') }),
+  z.strictObject({ kind: z.literal('layer-survives'), share: z.number().min(0.5).max(0.99).optional() }),
+  z.strictObject({ kind: z.literal('chosen-density'), density: z.number().min(0.2).max(4) }),
+])
+/** A strip's values (a repeated strip simply adds values; light units stand in `exposureSeconds` where `unit` says so), or a reading of a strip. */
+export const baseExposureBody = z.strictObject({
+  id: newId, values: strip.optional(), readingId: id.optional(), unit: exposureUnit.optional(), goal: exposureGoal.optional(),
+}).refine(b => (b.values === undefined) !== (b.readingId === undefined), { message: 'Give values or a reading.', path: ['values'] })
+
+/** Seconds are null for an exposure in light units; low and high are null where it was typed in, high also where the strip is too short to tell. */
+export const baseExposure = z.object({
+  id, value: z.number(), unit: exposureUnit, exposureSeconds: z.number().nullable(), exposureSecondsLow: z.number().nullable(), exposureSecondsHigh: z.number().nullable(),
+  low: z.number().nullable(), high: z.number().nullable(), readingId: id.nullable(),
+  goal: exposureGoal.nullable(), blackLightness: z.number().nullable(), values: strip.nullable(), warnings: z.array(z.object({ code: z.string(), message: z.string() })), createdAt: instant,
+})
+export type BaseExposureRecord = z.infer<typeof baseExposure>
 
 const root = '/api/studios/:studio/benches' as const
 export const benchEndpoints = {
@@ -78,4 +95,5 @@ export const benchEndpoints = {
   archiveBench: endpoint({ method: 'POST', path: `${root}/:bench/archive`, access: 'technician', summary: 'Put it away; what was made with it stays.', body: z.strictObject({ revision }), answers: { 200: bench } }),
   createStarterBench: endpoint({ method: 'POST', path: '/api/studios/:studio/starter-benches', access: 'member', summary: 'The service’s own bench for a process, with an uncalibrated starter curve.', body: z.strictObject({ process }), answers: { 200: bench, 201: bench } }),
   listBaseExposures: endpoint({ method: 'GET', path: `${root}/:bench/base-exposures`, access: 'member', summary: 'The bench’s base exposures, newest first.', query: listQuery, answers: { 200: listOf(baseExposure) } }),
+  createBaseExposure: endpoint({ method: 'POST', path: `${root}/:bench/base-exposures`, access: 'technician', summary: 'The base exposure from an exposure strip, as a new dated entry.', body: baseExposureBody, answers: { 200: baseExposure, 201: baseExposure } }),
 }

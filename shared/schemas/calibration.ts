@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { exposureUnit, process } from './benches'
-import { warning } from './curves'
+import { aim, curve, warning } from './curves'
 import { endpoint } from './endpoint'
 import { fraction, id, instant, listOf, listQuery, newId, text } from './primitives'
 
@@ -41,7 +41,7 @@ export const scannerProfile = z.object({
   from: z.number(), to: z.number(), warnings: z.array(warning), notes: z.string(), archivedAt: instant.nullable(), createdAt: instant,
 })
 export type ScannerProfile = z.infer<typeof scannerProfile>
-const profiles = '/api/studios/:studio/scanners/:scanner/profiles' as const
+const profiles = '/api/studios/:studio/scanner-profiles/:scanner' as const
 export const scannerProfileEndpoints = {
   listScannerProfiles: endpoint({ method: 'GET', path: profiles, access: 'member', summary: 'Profiles of a scanner; the newest of a process counts.', query: listQuery, answers: { 200: listOf(scannerProfile) } }),
   createScannerProfile: endpoint({ method: 'POST', path: profiles, access: 'technician', summary: 'Teach the service how this scanner sees a process.', body: scannerProfileBody, answers: { 200: scannerProfile, 201: scannerProfile } }),
@@ -57,13 +57,16 @@ export const tabletBody = z.strictObject({
 }).refine(b => (b.values === undefined) !== (b.readingId === undefined), { message: 'Give values or a reading.', path: ['values'] })
 export const tablet = z.object({
   id, benchId: id, readingId: id.nullable(), values: z.array(z.object({ density: z.number(), lightness: z.number() })),
+  exposure: z.object({ value: z.number(), unit: exposureUnit }).nullable(),
   /** log H between the paper’s first tone and its full black; null where the tablet does not reach */
   exposureScale: z.number().nullable(),
   /** ISO 6846:1992 exposure range R = 100 · (log H_S − log H_T), with which 90 % it means */
   isoRange: z.number().nullable(), isoSays: z.string(),
   maxDensity: z.number(), paperDensity: z.number(),
   /** the last step that still prints as full black at the base exposure; for working by dose or sun */
-  targetStep: z.number().nullable(), warnings: z.array(warning), createdAt: instant,
+  targetStep: z.number().nullable(),
+  /** density of the tablet behind which the print is still within 1 L* of its black */
+  fullBlackDensity: z.number().nullable(), warnings: z.array(warning), createdAt: instant,
 })
 export type Tablet = z.infer<typeof tablet>
 /** Effective UV density of each ink level on this film under this lamp, from a wedge and a tablet on one print. */
@@ -72,15 +75,19 @@ export const filmDensities = z.object({
   points: z.array(z.object({ level: fraction, density: z.number(), deviation: z.number() })), warnings: z.array(warning), createdAt: instant,
 })
 export type FilmDensities = z.infer<typeof filmDensities>
+/** Film densities of a bench with the same film, ink, lamp and process family. */
+const filmCurveBody = z.strictObject({ id: newId, filmDensitiesId: id, aim: aim.optional(), notes: text.optional() })
 export const tabletEndpoints = {
   listTablets: endpoint({ method: 'GET', path: `${benchRoot}/tablets`, access: 'member', summary: 'Step tablets printed on this bench.', query: listQuery, answers: { 200: listOf(tablet) } }),
   createTablet: endpoint({ method: 'POST', path: `${benchRoot}/tablets`, access: 'technician', summary: 'Exposure scale and paper range from a contact-printed step tablet.', body: tabletBody, answers: { 200: tablet, 201: tablet } }),
   listFilmDensities: endpoint({ method: 'GET', path: `${benchRoot}/film-densities`, access: 'member', summary: 'What the film’s ink levels hold back.', query: listQuery, answers: { 200: listOf(filmDensities) } }),
+  filmCurve: endpoint({ method: 'POST', path: `${benchRoot}/tablets/:tablet/film-curve`, access: 'technician', summary: 'A draft curve for this bench from its tablet and another bench’s film densities, with the stated extra uncertainty.', body: filmCurveBody, answers: { 200: curve, 201: curve } }),
   createFilmDensities: endpoint({ method: 'POST', path: `${benchRoot}/film-densities`, access: 'technician', summary: 'Split film from paper by a tablet and a curve of this bench.', body: z.strictObject({ id: newId, tabletId: id, curveId: id }), answers: { 200: filmDensities, 201: filmDensities } }),
 }
 
 // ── Two benches on the same axes ────────────────────────────────────────────────────────────────────────────────────────
-const evenness = z.object({ texture: z.number(), mottle: z.number(), gradient: z.number() })
+/** L* at the tone that shows each most: within patches (null where no spread was read), between patches, from the middle to the side. */
+const evenness = z.object({ texture: z.number().nullable(), mottle: z.number(), gradient: z.number() })
 const compared = z.object({ benchId: id, name: z.string(), curveId: id, version: z.number().int(), response: z.array(z.number()), paperLightness: z.number(), deepestLightness: z.number(), maxDensity: z.number(), densityRange: z.number(), contrast: z.number(), evenness: evenness.nullable() })
 export const comparison = z.object({
   benches: z.tuple([compared, compared]),

@@ -1,8 +1,9 @@
 import { z } from 'zod'
 import { benchEndpoints } from './benches'
-import { walkEndpoints } from './calibration'
+import { comparisonEndpoints, scannerProfileEndpoints, tabletEndpoints, walkEndpoints } from './calibration'
 import { curveEndpoints } from './curves'
 import { endpoint, type Endpoint } from './endpoint'
+import { findingEndpoints } from './findings'
 import { negativeEndpoints } from './negatives'
 import { peopleEndpoints } from './people'
 import { photoEndpoints } from './photos'
@@ -19,5 +20,6 @@ const serviceEndpoints = {
 
 /** Every route of the service, by name. Validation, types and the OpenAPI document all come from here. */
 export const contract = {
-  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints, ...photoEndpoints, ...negativeEndpoints, ...wedgeEndpoints,
+  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints,
+  ...tabletEndpoints, ...scannerProfileEndpoints, ...comparisonEndpoints, ...findingEndpoints, ...photoEndpoints, ...negativeEndpoints, ...wedgeEndpoints,
 } satisfies Record<string, Endpoint>

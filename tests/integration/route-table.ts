@@ -1,4 +1,5 @@
 import { benchCases } from './routes/benches'
+import { calibrationCases } from './routes/calibration'
 import { curveCases } from './routes/curves'
 import { negativeCases } from './routes/negatives'
 import { peopleCases } from './routes/people'
@@ -11,4 +12,4 @@ import { walkCases } from './routes/walk'
 import { wedgeCases } from './routes/wedges'
 
 /** Every handler of the service, each with a good call of it. What must be refused follows from the contract, or is named. */
-export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...shelfCases, ...benchCases, ...curveCases, ...scanCases, ...walkCases, ...photoCases, ...negativeCases, ...wedgeCases]
+export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...shelfCases, ...benchCases, ...curveCases, ...calibrationCases, ...scanCases, ...walkCases, ...photoCases, ...negativeCases, ...wedgeCases]

@@ -1,11 +1,11 @@
 import { sql } from 'drizzle-orm'
-import { boolean, doublePrecision, foreignKey, index, jsonb, pgTable, primaryKey, uniqueIndex, uuid, varchar } from 'drizzle-orm/pg-core'
+import { boolean, foreignKey, jsonb, pgTable, primaryKey, uniqueIndex, uuid, varchar } from 'drizzle-orm/pg-core'
 import type { z } from 'zod'
 import type { ink, path, recipe } from '../../../shared/schemas/benches'
 import { processes, readingChannels } from '../../../shared/schemas/benches'
 import { limits } from '../../../shared/schemas/limits'
 import { createdAt, instant, revision, studioId } from './columns'
-import { studios, users } from './people'
+import { studios } from './people'
 import { films, inkjets, lamps, papers, sensitizers } from './shelf'
 
 export const benches = pgTable('benches', {
@@ -32,21 +32,4 @@ export const benches = pgTable('benches', {
   foreignKey({ columns: [t.studioId, t.filmId], foreignColumns: [films.studioId, films.id] }),
   foreignKey({ columns: [t.studioId, t.inkjetId], foreignColumns: [inkjets.studioId, inkjets.id] }),
   foreignKey({ columns: [t.studioId, t.lampId], foreignColumns: [lamps.studioId, lamps.id] }),
-])
-
-/** Dated entries of a bench; the newest is the one that counts. */
-export const baseExposures = pgTable('base_exposures', {
-  studioId: studioId(),
-  id: uuid().notNull(),
-  benchId: uuid().notNull(),
-  value: doublePrecision().notNull(),
-  unit: varchar({ length: 8, enum: ['s', 'dose'] }).notNull(),
-  low: doublePrecision(),
-  high: doublePrecision(),
-  createdBy: uuid().references(() => users.id),
-  createdAt: createdAt(),
-}, t => [
-  primaryKey({ columns: [t.studioId, t.id] }),
-  foreignKey({ columns: [t.studioId, t.benchId], foreignColumns: [benches.studioId, benches.id] }),
-  index('base_exposures_bench').on(t.studioId, t.benchId, t.id),
 ])

@@ -1,4 +1,5 @@
-import { doublePrecision, foreignKey, integer, jsonb, pgTable, primaryKey, text, unique, uuid, varchar } from 'drizzle-orm/pg-core'
+import { doublePrecision, foreignKey, index, integer, jsonb, pgTable, primaryKey, text, unique, uuid, varchar } from 'drizzle-orm/pg-core'
+import type { ExposureGoal } from '../../../shared/calibration/base-exposure'
 import type { FilmDensities, Tablet } from '../../../shared/schemas/calibration'
 import { walkStates, walkSteps } from '../../../shared/schemas/calibration'
 import type { Warning } from '../../../shared/schemas/curves'
@@ -8,13 +9,38 @@ import { curves } from './curves'
 import { users } from './people'
 import { readings } from './readings'
 
+/** What a strip gave with a base exposure. */
+export interface FoundBaseExposure { goal: ExposureGoal, values: { exposureSeconds: number, lightness: number }[], blackLightness: number, warnings: Warning[] }
+
+/** Dated entries of a bench; the newest is the one that counts. */
+export const baseExposures = pgTable('base_exposures', {
+  studioId: studioId(),
+  id: uuid().notNull(),
+  benchId: uuid().notNull(),
+  value: doublePrecision().notNull(),
+  unit: varchar({ length: 8, enum: ['s', 'dose'] }).notNull(),
+  low: doublePrecision(),
+  high: doublePrecision(),
+  /** of an exposure strip; null where it was typed in */
+  readingId: uuid(),
+  found: jsonb().$type<FoundBaseExposure>(),
+  bodyHash: varchar({ length: 64 }).notNull().default(''),
+  createdBy: uuid().references(() => users.id),
+  createdAt: createdAt(),
+}, t => [
+  primaryKey({ columns: [t.studioId, t.id] }),
+  foreignKey({ columns: [t.studioId, t.benchId], foreignColumns: [benches.studioId, benches.id] }),
+  foreignKey({ columns: [t.studioId, t.benchId, t.readingId], foreignColumns: [readings.studioId, readings.benchId, readings.id] }),
+  index('base_exposures_bench').on(t.studioId, t.benchId, t.id),
+])
+
 export const tablets = pgTable('tablets', {
   studioId: studioId(),
   id: uuid().notNull(),
   benchId: uuid().notNull(),
   readingId: uuid(),
   values: jsonb('tablet_values').$type<Tablet['values']>().notNull(),
-  result: jsonb().$type<Omit<Tablet, 'id' | 'benchId' | 'readingId' | 'values' | 'createdAt'>>().notNull(),
+  result: jsonb().$type<Omit<Tablet, 'id' | 'benchId' | 'readingId' | 'values' | 'exposure' | 'createdAt'>>().notNull(),
   exposureValue: doublePrecision(),
   exposureUnit: varchar({ length: 8, enum: ['s', 'dose'] }),
   bodyHash: varchar({ length: 64 }).notNull(),
