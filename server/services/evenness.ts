@@ -4,7 +4,7 @@ import type { Queryable } from '../db/client'
 import { readings, wedges } from '../db/schema'
 import { imageChild } from './image-child'
 import { placedPatches } from './reading-places'
-import type { ReadingRow } from './readings'
+import type { ReadingRow } from './reading-view'
 import { wedgeChartOf } from './wedge-charts'
 import type { WedgeRow } from './wedge-parts'
 

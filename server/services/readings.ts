@@ -4,7 +4,7 @@ import { readMeasurements, type Measurements } from '#shared/calibration/measure
 import { ComputeError } from '#shared/errors'
 import type { Reading, readingBody, readingQuery } from '#shared/schemas/curves'
 import { db, type Queryable } from '../db/client'
-import { curveReadings, readings, tablets } from '../db/schema'
+import { baseExposures, curveReadings, readings, tablets } from '../db/schema'
 import { storageKeys } from '../storage'
 import type { StudioAccess } from './access'
 import { recordEvent } from './audit'
@@ -78,7 +78,7 @@ export async function findReading(on: Queryable, studioId: string, id: string): 
 export const hintReading = (on: Queryable, row: { studioId: string, id: string, fence: number }): Promise<void> =>
   hint(on, { studioId: row.studioId, topic: 'readings', id: row.id, revision: row.fence + 1 })
 
-/** Removes a reading that no curve and no tablet rests on, with its scan. */
+/** Removes a reading that no curve, tablet or base exposure rests on, with its scan. */
 export async function deleteReading(studio: StudioAccess, id: string): Promise<void> {
   await db().transaction(async (tx) => {
     const row = requireFound(await findReading(tx, studio.id, id))
@@ -94,5 +94,7 @@ export async function deleteReading(studio: StudioAccess, id: string): Promise<v
 export async function requireUnused(on: Queryable, { studioId, id }: ReadingRow, so: string): Promise<void> {
   const curves = await on.select({ id: curveReadings.curveId }).from(curveReadings).where(and(eq(curveReadings.studioId, studioId), eq(curveReadings.readingId, id))).limit(1)
   const measured = await on.select({ id: tablets.id }).from(tablets).where(and(eq(tablets.studioId, studioId), eq(tablets.readingId, id))).limit(1)
-  if (curves.length + measured.length > 0) throw new ComputeError('wrong_state', `A ${curves.length ? 'curve' : 'step tablet'} rests on this reading, so ${so}.`)
+  const exposures = await on.select({ id: baseExposures.id }).from(baseExposures).where(and(eq(baseExposures.studioId, studioId), eq(baseExposures.readingId, id))).limit(1)
+  const what = curves.length ? 'curve' : measured.length ? 'step tablet' : exposures.length ? 'base exposure' : null
+  if (what) throw new ComputeError('wrong_state', `A ${what} rests on this reading, so ${so}.`)
 }

@@ -29,6 +29,8 @@ const blackWithin = 1
 /** Of the layer's density; common practice, no source. */
 const survivingShare = 0.9
 const leastExposures = 5
+/** Widening of the bounds about the estimate: neighbouring steps share their unevenness, so without it 95 % held 87 % of simulated strips. */
+const boundsSpread = 1.3
 /** A strip of less range than this has no curve in it, L*. */
 const leastRange = 5
 
@@ -47,7 +49,7 @@ export function findBaseExposure(values: readonly ExposureValue[], goal: Exposur
   if (never > 0.5) throw new ComputeError('range_too_small', 'This strip never gets as dark as is asked for. Expose a longer strip, or ask for less.')
   const finite = reached.filter(r => Number.isFinite(r.logExposure))
   const log = finite.reduce((sum, r) => sum + r.weight * r.logExposure, 0) / (1 - never)
-  const [low, high] = [quantile(reached, 0.025), quantile(reached, 0.975)]
+  const [low, high] = [quantile(reached, 0.025), quantile(reached, 0.975)].map(bound => log + boundsSpread * (bound - log)) as [number, number]
   const seconds = values.map(v => v.exposureSeconds)
   return {
     exposureSeconds: 10 ** log, exposureSecondsLow: Math.min(10 ** log, 10 ** low), exposureSecondsHigh: Number.isFinite(high) ? Math.max(10 ** log, 10 ** high) : null,

@@ -17,9 +17,9 @@ interface Prior { mean: number, deviation: number }
 
 /** ln of the slope by the natural logarithm of odds in log₁₀ exposure, and of the shape. The slope's prior spans exposure scales of about 1 to 6. */
 const slopePrior: Prior = { mean: Math.log(3.6), deviation: 0.45 }
-const shapePriors: Record<keyof typeof exposureCurves, Prior> = { richards: { mean: 0.3, deviation: 1.5 }, turned: { mean: -2, deviation: 1.5 } }
+const shapePriors: Record<keyof typeof exposureCurves, Prior> = { richards: { mean: 0.3, deviation: 3 }, turned: { mean: -2, deviation: 3 } }
 /** Deviation of the deepest density about the mean of the strip's longest exposures' quarter. */
-const deepestDeviation = 0.03
+const deepestDeviation = 0.02
 /** Density of coated, cleared paper; common practice, no source. */
 const paperPrior: Prior = { mean: 0.07, deviation: 0.03 }
 

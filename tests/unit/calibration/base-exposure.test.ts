@@ -19,10 +19,10 @@ const codes = (warnings: { code: string }[]): string[] => warnings.map(w => w.co
 describe('the base exposure of a strip', () => {
   it.each(independent.strips)('is that of an independent numpy and scipy program, strip %#', ({ values, meanLog, lowLog, highLog }) => {
     const found = findBaseExposure(values)
-    // Both are drawn: within 0.03 log, a tenth of a stop; the bounds, told by few draws, within 0.08 log.
+    // Both are drawn: within 0.03 log, a tenth of a stop; the bounds, told by few draws and widened by 1.3, within 0.1 log.
     expect(Math.abs(Math.log10(found.exposureSeconds) - meanLog)).toBeLessThan(0.03)
-    expect(Math.abs(Math.log10(found.exposureSecondsLow) - lowLog)).toBeLessThan(0.08)
-    expect(Math.abs(Math.log10(found.exposureSecondsHigh!) - highLog)).toBeLessThan(0.08)
+    expect(Math.abs(Math.log10(found.exposureSecondsLow) - meanLog - 1.3 * (lowLog - meanLog))).toBeLessThan(0.1)
+    expect(Math.abs(Math.log10(found.exposureSecondsHigh!) - meanLog - 1.3 * (highLog - meanLog))).toBeLessThan(0.1)
   })
 
   it('is the shortest time within 1 L* of the black (derived from a logistic print)', () => {
