@@ -7,6 +7,7 @@ import { readingChild } from '../services/image-child'
 import type { ReadingRow } from '../services/reading-view'
 import { hintReading } from '../services/readings'
 import { printOfScan } from '../services/scan-print'
+import { withProfile } from '../services/scan-profile'
 import { evidenceOf, paperLightnessOf, qualityOf, storedPatches, toldWarnings } from '../services/scan-result'
 import { candidateWedges, wedgeOfScan } from '../services/scan-wedge'
 import { storage } from '../services/storage'
@@ -29,13 +30,13 @@ export const readingWork: LeasedWork<typeof readings> = {
     const { wedge, warnings } = await wedgeOfScan(row, seen.code, candidates)
     await leases.note(lease, { wedgeId: wedge.id })
     const chart = await wedgeChartOf(wedge)
-    const report = await readPatches(row, seen, chart, calls)
+    const { report, scannerProfileId, warnings: ofProfile } = await withProfile(lease.row, await readPatches(row, seen, chart, calls))
     const patches = storedPatches(chart.patches.map(({ level }) => level), report)
     await leases.commit(lease, async (tx) => {
       const print = await printOfScan(tx, { row: lease.row, wedge, page: chart.page, patches })
       return {
         patches, quality: report.quality, corners: report.corners.map(([x, y]): [number, number] => [x, y]), evidence: evidenceOf(seen, report),
-        warnings: [...warnings, ...toldWarnings(report), ...print.warnings], wedgePrintId: print.wedgePrintId,
+        warnings: [...warnings, ...toldWarnings(report), ...ofProfile, ...print.warnings], scannerProfileId, wedgePrintId: print.wedgePrintId,
       }
     })
   },
