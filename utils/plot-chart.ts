@@ -15,8 +15,8 @@ export interface PlotLine {
   /** where along x the name stands, and on which side of the line */
   nameAt: number
   nameSide: 'above' | 'below'
-  /** `main` unless said: another version lies quietly beside it, a straight line or an aim is dashed */
-  kind?: 'main' | 'other' | 'dashed'
+  /** `main` unless said: `second` has equal weight, another version lies quietly beside it, a straight line or an aim is dashed */
+  kind?: 'main' | 'second' | 'other' | 'dashed'
 }
 export interface PlotDots { points: PlotPoint[], mark: MarkShape, /** drawn large: few points that each count */ large?: boolean }
 /** A place on the x axis: a line from bottom to top with its name, and how far it is known. */
@@ -49,17 +49,18 @@ export function plotDatasets(plot: Plot, colours: PlotColours): ChartDataset<'sc
     ...(plot.dots ?? []).map(dots => dotsDataset(dots, colours.marks[dots.mark])),
     ...plot.lines.map((line, i) => ({
       data: line.points, showLine: true, label: i === 0 ? 'first' : line.name, pointRadius: 0, pointHitRadius: 0, pointHoverRadius: i === 0 ? 4 : 0,
-      pointHoverBackgroundColor: colours.line, borderColor: isQuiet(line) ? colours.quiet : colours.line,
-      borderWidth: isQuiet(line) ? 1 : 2, borderDash: line.kind === 'dashed' ? [5, 4] : [],
+      pointHoverBackgroundColor: colours.line, borderColor: lineColour(line, colours), borderWidth: isQuiet(line) ? 1 : 2, borderDash: dashes[line.kind ?? 'main'],
     })),
   ]
 }
 
+const dashes = { main: [], second: [9, 3], other: [], dashed: [5, 4] }
 const isQuiet = (line: PlotLine) => line.kind === 'dashed' || line.kind === 'other'
+const lineColour = (line: PlotLine, colours: PlotColours) => isQuiet(line) ? colours.quiet : line.kind === 'second' ? colours.marks.triangle : colours.line
 
 function dotsDataset({ points, mark, large }: PlotDots, colour: string): ChartDataset<'scatter'> {
   return {
-    data: points, showLine: false, label: 'dots', pointStyle: pointStyles[mark], pointRadius: radii[mark] * (large ? 2.4 : 1), pointHitRadius: 0,
+    data: points, showLine: false, label: 'dots', clip: false, pointStyle: pointStyles[mark], pointRadius: radii[mark] * (large ? 2.4 : 1), pointHitRadius: 0,
     pointBackgroundColor: colour, pointBorderColor: colour, pointBorderWidth: isDrawnInLines(mark) ? (large ? 2 : 1) : 0,
   }
 }
@@ -101,7 +102,7 @@ export function lineNames(read: () => Drawn): Plugin<'scatter'> {
       for (const line of plot.lines.filter(l => l.name !== '')) {
         const at = { x: line.nameAt, y: valueAt(line.points, line.nameAt) }
         ctx.font = `${isQuiet(line) ? 400 : 600} 13px 'IBM Plex Sans', sans-serif`
-        ctx.fillStyle = isQuiet(line) ? colours.quiet : colours.line
+        ctx.fillStyle = lineColour(line, colours)
         ctx.textAlign = line.nameSide === 'above' ? 'right' : 'left'
         const x = scales.x!.getPixelForValue(at.x) + (line.nameSide === 'above' ? -10 : 12)
         const y = scales.y!.getPixelForValue(at.y) + (line.nameSide === 'above' ? -6 : 16)

@@ -8,7 +8,7 @@ import { newStudio } from '../support/studio'
 
 useBrowser()
 
-interface Records { slug: string, photo: string, negative: string, bench: string, wedge: string, reading: string }
+interface Records { slug: string, photo: string, negative: string, bench: string, wedge: string, reading: string, scanner: string }
 
 /** Every screen, by its page file: where it is, and what is there once it stands. */
 const screens: Record<string, { path: (r: Records) => string, stands: string, isPublic?: boolean }> = {
@@ -23,12 +23,16 @@ const screens: Record<string, { path: (r: Records) => string, stands: string, is
   'pages/s/[studio]/benches/new.vue': { path: r => `/s/${r.slug}/benches/new`, stands: 'h1' },
   'pages/s/[studio]/benches/[bench]/index.vue': { path: r => `/s/${r.slug}/benches/${r.bench}`, stands: 'h1' },
   'pages/s/[studio]/benches/[bench]/change.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/change`, stands: 'h1' },
+  'pages/s/[studio]/benches/[bench]/compare.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/compare`, stands: 'h1' },
+  'pages/s/[studio]/benches/[bench]/exposure.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/exposure`, stands: 'form' },
+  'pages/s/[studio]/benches/[bench]/tablet.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/tablet`, stands: 'form' },
   'pages/s/[studio]/benches/[bench]/reading.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/reading`, stands: 'h1' },
   'pages/s/[studio]/benches/[bench]/calibrate.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/calibrate?step=expose`, stands: 'h1' },
   'pages/s/[studio]/benches/[bench]/wedges/index.vue': { path: r => `/s/${r.slug}/benches/${r.bench}/wedges`, stands: 'h1' },
   'pages/s/[studio]/benches/[bench]/wedges/[wedge].vue': { path: r => `/s/${r.slug}/benches/${r.bench}/wedges/${r.wedge}`, stands: 'h1' },
   'pages/s/[studio]/benches/[bench]/readings/[reading].vue': { path: r => `/s/${r.slug}/benches/${r.bench}/readings/${r.reading}`, stands: 'h1' },
   'pages/s/[studio]/shelf/index.vue': { path: r => `/s/${r.slug}/shelf`, stands: 'h1' },
+  'pages/s/[studio]/shelf/scanners/[scanner].vue': { path: r => `/s/${r.slug}/shelf/scanners/${r.scanner}`, stands: 'form' },
   'pages/s/[studio]/people.vue': { path: r => `/s/${r.slug}/people`, stands: 'h1' },
 }
 
@@ -41,7 +45,8 @@ async function newRecords() {
   const bench = (await agent.post(`${root}/benches`, { name: 'Blue on cotton', process: 'cyanotype' })).body
   const wedge = (await agent.post(`${root}/benches/${bench.id}/wedges`, { page: { widthMm: 210, heightMm: 297 } })).body
   const reading = (await agent.post(`${root}/benches/${bench.id}/readings`, { unit: 'lightness', values: Array.from({ length: 21 }, (_, i) => ({ level: i / 20, value: 22 + 3.6 * i })) })).body
-  return { agent, records: { slug: studio.slug, photo: photo.id, negative: negative.id, bench: bench.id, wedge: wedge.id, reading: reading.id } as Records }
+  const scanner = (await agent.post(`${root}/scanners`, { name: 'Flatbed by the window' })).body
+  return { agent, records: { slug: studio.slug, photo: photo.id, negative: negative.id, bench: bench.id, wedge: wedge.id, reading: reading.id, scanner: scanner.id } as Records }
 }
 
 describe('accessibility', () => {

@@ -19,6 +19,15 @@ const screens: Record<string, Screen> = {
   'a bench with its plots': { path: made => `benches/${made.bench}`, then: page => page.locator('canvas').first().waitFor() },
   'a curve as a table': { path: made => `benches/${made.bench}`, then: page => page.getByRole('button', { name: 'As a table' }).click() },
   'a base exposure to enter': { path: made => `benches/${made.bench}`, then: page => page.getByRole('button', { name: 'Enter a new one' }).click() },
+  'another version laid beside a curve': { path: made => `benches/${made.bench}`, then: page => page.getByRole('button', { name: 'curve 1' }).click() },
+  'a note being written': { path: made => `benches/${made.bench}`, then: page => page.getByRole('button', { name: 'Write a note' }).click() },
+  'two benches compared': { path: made => `benches/${made.bench}/compare?with=${made.second}`, then: page => page.locator('canvas').first().waitFor() },
+  'a strip of exposures, typed in': { path: made => `benches/${made.bench}/exposure`, then: async (page) => {
+    for (const [i, lightness] of strip.entries()) await page.getByRole('textbox', { name: `Step ${i + 1}, L*` }).fill(String(lightness))
+    await page.getByRole('button', { name: /^Keep/ }).waitFor()
+  } },
+  'a step tablet’s print': { path: made => `benches/${made.bench}/tablet`, then: page => page.locator('canvas').first().waitFor() },
+  'a scanner with a profile': { path: made => `shelf/scanners/${made.scanner}`, then: page => page.locator('canvas').first().waitFor() },
   'a starter with its assumptions': { path: made => `benches/${made.starter}`, then: page => page.getByText('rests on assumptions').waitFor() },
   'a step of the walk with its pictures': { path: made => `benches/${made.bench}/calibrate?step=expose`, then: page => page.getByText('This will be print 2').waitFor() },
   'a film to put on paper, laid out': { path: made => `benches/${made.bench}/calibrate?step=wedge`, then: page => page.getByRole('img', { name: /^Scattered wedge/ }).waitFor() },
@@ -35,6 +44,8 @@ const screens: Record<string, Screen> = {
   'a thing on the shelf': { path: () => 'shelf', then: page => page.getByRole('button', { name: /^Change / }).first().click() },
 }
 
+/** Derived: a print that falls evenly with exposure and then stays at its black. */
+const strip = [86, 80, 71, 60, 48, 40, 37, 36, 36, 36]
 type Made = Awaited<ReturnType<typeof furnish>>
 async function furnish() {
   const { agent, root, studio } = await newStudio()
@@ -45,6 +56,7 @@ async function furnish() {
   const bench = (await agent.post(`${root}/benches`, { name: 'Blue on cotton', process: 'cyanotype', paperId: paper.id, baseExposure: { value: 260, unit: 's' } })).body
   const values = Array.from({ length: 21 }, (_, i) => ({ level: i / 20, value: 22 + 73 * (i / 20) ** 1.3 }))
   const reading = (await agent.post(`${root}/benches/${bench.id}/readings`, { unit: 'lightness', values })).body
+  await agent.post(`${root}/benches/${bench.id}/curves`, { readingIds: [reading.id], aim: 'even-density' })
   const curve = (await agent.post(`${root}/benches/${bench.id}/curves`, { readingIds: [reading.id] })).body
   await agent.post(`${root}/curves/${curve.id}/use`)
   const wedge = (await agent.post(`${root}/benches/${bench.id}/wedges`, { page: { widthMm: 150, heightMm: 115 } })).body
@@ -53,9 +65,15 @@ async function furnish() {
   const picture = await scanFile(scanOf(printOfChart(chart), chart, {}, { hue: blue }))
   const scan = (await agent.call('POST', `${root}/wedges/${wedge.id}/readings`, { body: scanForm(picture) })).body
   await vi.waitUntil(async () => (await agent.get(`${root}/readings/${scan.id}`)).body.state === 'ready', { timeout: 60_000, interval: 300 })
+  const second = (await agent.post(`${root}/benches`, { name: 'Blue on washi', process: 'cyanotype' })).body
+  const other = (await agent.post(`${root}/benches/${second.id}/readings`, { unit: 'lightness', values: values.map(v => ({ ...v, value: 30 + 60 * v.level })) })).body
+  await agent.post(`${root}/curves/${(await agent.post(`${root}/benches/${second.id}/curves`, { readingIds: [other.id] })).body.id}/use`)
+  await agent.post(`${root}/benches/${bench.id}/tablets`, { values: Array.from({ length: 21 }, (_, i) => ({ density: 0.05 + 0.15 * i, lightness: 22 + 73 / (1 + Math.exp(-(i - 8) / 1.5)) })) })
+  const scanner = (await agent.post(`${root}/scanners`, { name: 'Flatbed by the window' })).body
+  await agent.post(`${root}/scanner-profiles/${scanner.id}`, { process: 'cyanotype', kind: 'grey-scale', points: Array.from({ length: 9 }, (_, i) => ({ scanned: 20 + 9 * i, measured: 15 + 9.6 * i })) })
   const starter = (await agent.post(`${root}/starter-benches`, { process: 'cyanotype' })).body
   await agent.post(`${root}/negatives`, { photoId: photo.id, benchId: bench.id, size: { widthMm: 100, heightMm: 100 } })
-  return { agent, slug: studio.slug as string, photo: photo.id as string, bench: bench.id as string, wedge: wedge.id as string, scan: scan.id as string, starter: starter.id as string }
+  return { agent, slug: studio.slug as string, photo: photo.id as string, bench: bench.id as string, wedge: wedge.id as string, scan: scan.id as string, second: second.id as string, scanner: scanner.id as string, starter: starter.id as string }
 }
 
 /** Counts the pixels of the screen that hold blue light. */
