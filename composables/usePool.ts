@@ -1,16 +1,17 @@
-import { countPrints, defaultPool, isChosen, poolEntries, withEntry, type PoolReading } from '~/utils/pool'
+import type { WedgeBrief } from '#shared/schemas/wedges'
+import { countPrints, defaultPool, isChosen, poolEntries, readyIds, type PoolEntry, type PoolReading } from '~/utils/pool'
 
 /** A bench's readings by wedge print, and which prints go into the next curve. Prints that come later go in as they would have at first. */
-export function usePool(readings: Readonly<Ref<PoolReading[]>>) {
-  const entries = computed(() => poolEntries(readings.value))
+export function usePool(readings: Readonly<Ref<PoolReading[]>>, wedges: Readonly<Ref<Pick<WedgeBrief, 'id' | 'kind'>[]>> = ref([])) {
+  const entries = computed(() => poolEntries(readings.value, wedges.value))
   const chosen = ref(defaultPool(entries.value))
   watch(entries, (now, before) => {
     const usual = defaultPool(now)
-    for (const entry of now) {
+    const isIn = (entry: PoolEntry) => {
       const earlier = before.find(other => other.key === entry.key)
-      const isIn = earlier && defaultPool([earlier]).length ? isChosen(earlier, chosen.value) : isChosen(entry, usual)
-      chosen.value = withEntry(chosen.value, entry, isIn)
+      return earlier && readyIds(earlier).length ? isChosen(earlier, chosen.value) : isChosen(entry, usual)
     }
+    chosen.value = now.filter(isIn).flatMap(readyIds)
   })
   return { entries, chosen, count: computed(() => countPrints(entries.value, chosen.value)) }
 }

@@ -1,21 +1,29 @@
 import type { Reading } from '#shared/schemas/curves'
+import type { WedgeKind } from '#shared/schemas/wedges'
 import { measuredPoints } from './curve-chart'
 import { markOf, type MarkShape, type PlotDots } from './plot-chart'
 
-export type PoolReading = Pick<Reading, 'id' | 'state' | 'quality' | 'wedgePrintId' | 'printNumber' | 'createdAt' | 'patches' | 'warnings' | 'unit' | 'zero' | 'progress' | 'error' | 'evidence'>
+export type PoolReading = Pick<Reading, 'id' | 'state' | 'quality' | 'wedgeId' | 'wedgePrintId' | 'printNumber' | 'createdAt' | 'patches' | 'warnings' | 'unit' | 'zero' | 'progress' | 'error' | 'evidence'>
 
 /** What counts as one sample: all scans of one wedge print, or one set of measured values. Phone readings of a print stand by themselves. */
 export interface PoolEntry {
   key: string
   isPhone: boolean
+  /** the cells of a scattered wedge tell uneven coating from tone; other values are points only. The two are fitted in different ways, never together */
+  isScattered: boolean
   printNumber: number | null
   /** newest first */
   readings: PoolReading[]
   mark: MarkShape
 }
 
-/** A bench's readings by wedge print, in the order given. Each entry keeps its shape whatever is chosen. */
-export function poolEntries(readings: readonly PoolReading[]): PoolEntry[] {
+/** Guides of other steps are read, too, but make no curve. */
+const curveKinds: readonly WedgeKind[] = ['scattered', 'numbered']
+
+/** A bench's readings by wedge print, in the order given; those of guides are left out. Each entry keeps its shape whatever is chosen. */
+export function poolEntries(all: readonly PoolReading[], wedges: readonly { id: string, kind: WedgeKind }[] = []): PoolEntry[] {
+  const kindOf = (reading: PoolReading) => wedges.find(wedge => wedge.id === reading.wedgeId)?.kind
+  const readings = all.filter(reading => reading.wedgeId === null || curveKinds.includes(kindOf(reading) ?? 'scattered'))
   const entries = new Map<string, PoolEntry>()
   // From the oldest on, so that a new print takes the next shape and leaves the others theirs.
   for (const reading of [...readings].reverse()) {
@@ -23,24 +31,25 @@ export function poolEntries(readings: readonly PoolReading[]): PoolEntry[] {
     const key = `${reading.wedgePrintId ?? reading.id}${isPhone ? ':phone' : ''}`
     const entry = entries.get(key)
     if (entry) entry.readings.unshift(reading)
-    else entries.set(key, { key, isPhone, printNumber: reading.printNumber, readings: [reading], mark: markOf(entries.size) })
+    else entries.set(key, { key, isPhone, isScattered: reading.wedgeId !== null && kindOf(reading) !== 'numbered', printNumber: reading.printNumber, readings: [reading], mark: markOf(entries.size) })
   }
   return [...entries.values()].reverse()
 }
 
 export const readyIds = (entry: PoolEntry): string[] => entry.readings.filter(reading => reading.state === 'ready').map(reading => reading.id)
 
-/** What goes into a curve unless somebody says otherwise: all that is read; phone readings only where there is nothing else. */
+/** What goes into a curve unless somebody says otherwise: scattered wedges before other values, phone readings only where there is nothing else. */
 export function defaultPool(entries: readonly PoolEntry[]): string[] {
-  const better = entries.filter(entry => !entry.isPhone).flatMap(readyIds)
-  return better.length > 0 ? better : entries.flatMap(readyIds)
+  const groups = [false, true].flatMap(isPhone => [true, false].map(isScattered => entries.filter(entry => entry.isPhone === isPhone && entry.isScattered === isScattered).flatMap(readyIds)))
+  return groups.find(ids => ids.length > 0) ?? []
 }
 
 export const isChosen = (entry: PoolEntry, chosen: readonly string[]): boolean => readyIds(entry).some(id => chosen.includes(id))
 
-/** The pool with a whole entry taken in or left out. */
-export function withEntry(chosen: readonly string[], entry: PoolEntry, isIn: boolean): string[] {
-  const others = chosen.filter(id => !entry.readings.some(reading => reading.id === id))
+/** The pool with a whole entry taken in or left out; entries of the other kind make room for it. */
+export function withEntry(chosen: readonly string[], entry: PoolEntry, isIn: boolean, entries: readonly PoolEntry[]): string[] {
+  const leaves = isIn ? entries.filter(other => other.isScattered !== entry.isScattered || other === entry) : [entry]
+  const others = chosen.filter(id => !leaves.some(other => other.readings.some(reading => reading.id === id)))
   return isIn ? [...others, ...readyIds(entry)] : others
 }
 

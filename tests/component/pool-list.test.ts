@@ -4,7 +4,7 @@ import PoolList from '../../components/curves/PoolList.vue'
 import { defaultPool, poolEntries, type PoolReading } from '../../utils/pool'
 
 const reading = (id: string, fields: Partial<PoolReading>): PoolReading => ({
-  id, state: 'ready', quality: 'scan', wedgePrintId: null, printNumber: null, createdAt: '2020-06-01T10:00:00Z', warnings: [], unit: null, zero: null, progress: 1, error: null, evidence: null,
+  id, state: 'ready', quality: 'scan', wedgeId: 'w', wedgePrintId: null, printNumber: null, createdAt: '2020-06-01T10:00:00Z', warnings: [], unit: null, zero: null, progress: 1, error: null, evidence: null,
   patches: [{ level: 0, lightness: 22, lab: null, deviation: null, used: true }, { level: 1, lightness: 95, lab: null, deviation: null, used: true }], ...fields,
 })
 const entries = poolEntries([
@@ -12,7 +12,7 @@ const entries = poolEntries([
   reading('second-scan', { wedgePrintId: 'a', printNumber: 1 }),
   reading('scan', { wedgePrintId: 'a', printNumber: 1 }),
   reading('blurred', { wedgePrintId: 'c', printNumber: 3, state: 'failed', patches: [], error: { code: 'blurred', message: 'The picture is not sharp. Scan it again, flat on the glass.' } }),
-])
+], [{ id: 'w', kind: 'scattered' }])
 
 describe('PoolList', () => {
   it('ticks prints, not scans; leaves the phone’s reading off and says why', async () => {
