@@ -1,3 +1,5 @@
+import { channelValue } from '#shared/calibration/channel-values'
+import type { ReadingChannel } from '#shared/schemas/benches'
 import type { Curve, Reading } from '#shared/schemas/curves'
 import { densityFromLightness } from '#shared/tone/density'
 
@@ -35,11 +37,22 @@ export function wideBand({ bandOfAll }: ChartCurve): Band | undefined {
   return { lower: edge(bandOfAll.low), upper: edge(bandOfAll.high) }
 }
 
-/** Every patch that was read: ink in per cent and print lightness. */
-export const measuredPoints = (readings: readonly Pick<Reading, 'patches'>[]): PlotPoint[] =>
-  readings.flatMap(reading => reading.patches)
-    .filter(patch => patch.lightness !== null && patch.used)
-    .map(patch => ({ x: patch.level * 100, y: patch.lightness! }))
+type Patch = Reading['patches'][number]
+
+/** Every patch that was read: ink in per cent and its value; lightness, or what `valueOf` makes of it. Null leaves a patch out. */
+export const measuredPoints = (readings: readonly Pick<Reading, 'patches'>[], valueOf: (patch: Patch) => number | null = patch => patch.lightness): PlotPoint[] =>
+  readings.flatMap(reading => reading.patches).flatMap((patch) => {
+    const value = patch.lightness === null || !patch.used ? null : valueOf(patch)
+    return value === null ? [] : [{ x: patch.level * 100, y: value }]
+  })
+
+/** A patch's value in a bench's reading channel; null where the channel asks for a colour that was not read. */
+export function valueInChannel(channel: ReadingChannel, path: Curve['colourPath']): (patch: Patch) => number | null {
+  return ({ lightness, lab }) => {
+    if (lightness === null || (channel === 'colour-path' && !(lab && path))) return null
+    return channelValue({ lightness, lab }, channel, path)
+  }
+}
 
 /** Linear interpolation in a line of increasing x; held at its ends. */
 export function valueAt(line: readonly PlotPoint[], x: number): number {

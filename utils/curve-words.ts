@@ -1,5 +1,15 @@
+import type { ReadingChannel } from '#shared/schemas/benches'
 import type { Curve } from '#shared/schemas/curves'
 import { formatDecimal, formatFixed, formatWhen } from './figures'
+
+/** What figures called L* mean on a bench that is not read in lightness. */
+export const channelSays: Record<ReadingChannel, string> = {
+  'lightness': '',
+  'density-blue': 'This bench is read through blue: L* here is the lightness behind that filter.',
+  'density-green': 'This bench is read through green: L* here is the lightness behind that filter.',
+  'density-red': 'This bench is read through red: L* here is the lightness behind that filter.',
+  'colour-path': 'This bench is read along its own colours: figures called L* are per cent of the way from its deepest tone to paper.',
+}
 
 /** Whole L* from 10, tenths from 1, hundredths below: an error is not known better. */
 export const errorFigure = (value: number): string => formatDecimal(value, value >= 10 ? 0 : value >= 1 ? 1 : 2)

@@ -57,8 +57,8 @@ export function withEntry(chosen: readonly string[], entry: PoolEntry, isIn: boo
 export const countPrints = (entries: readonly PoolEntry[], chosen: readonly string[]): number => entries.filter(entry => isChosen(entry, chosen)).length
 
 /** The patches of each entry that a curve was fitted from, in the entry's shape. */
-export const poolDots = (entries: readonly PoolEntry[], readingIds: readonly string[]): PlotDots[] =>
-  entries.map(entry => ({ mark: entry.mark, points: measuredPoints(entry.readings.filter(reading => readingIds.includes(reading.id))) })).filter(dots => dots.points.length > 0)
+export const poolDots = (entries: readonly PoolEntry[], readingIds: readonly string[], valueOf?: Parameters<typeof measuredPoints>[1]): PlotDots[] =>
+  entries.map(entry => ({ mark: entry.mark, points: measuredPoints(entry.readings.filter(reading => readingIds.includes(reading.id)), valueOf) })).filter(dots => dots.points.length > 0)
 
 const unitNames = { lightness: 'L*', density: 'density', reflectance: 'reflectance' } as const
 

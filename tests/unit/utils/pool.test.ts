@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest'
+import { valueInChannel } from '../../../utils/curve-chart'
 import { countPrints, defaultPool, poolDots, poolEntries, readingText, withEntry, type PoolReading } from '../../../utils/pool'
 
 const patch = (level: number, lightness: number | null, used = true) => ({ level, lightness, lab: null, deviation: null, used })
@@ -69,6 +70,13 @@ describe('readings pooled by wedge print', () => {
 it('the patches of a curve’s readings stand in their prints’ shapes, without those left out of the fit', () => {
   const entries = poolEntries([reading('b', { patches: [patch(0, 20), patch(0.5, 99, false), patch(1, 95)] }), reading('a')], wedges)
   expect(poolDots(entries, ['b'])).toEqual([{ mark: 'triangle', points: [{ x: 0, y: 20 }, { x: 100, y: 95 }] }])
+})
+
+it('patches stand in the bench’s reading channel, and are left out where it asks for a colour that was not read', () => {
+  const entries = poolEntries([reading('b', { patches: [{ ...patch(0, 20), lab: [20, 0, 0] }, patch(1, 95)] })])
+  const path: [number, number, number][] = [[100, 0, 0], [0, 0, 0]]
+  expect(poolDots(entries, ['b'], valueInChannel('colour-path', path))[0]!.points).toEqual([{ x: 0, y: expect.closeTo(20, 9) }])
+  expect(poolDots(entries, ['b'], valueInChannel('lightness', null))[0]!.points).toHaveLength(2)
 })
 
 it('a reading says how many of its patches were read, their range and how they were measured', () => {
