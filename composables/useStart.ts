@@ -2,7 +2,7 @@ import { v7 as uuidv7 } from 'uuid'
 import { contract } from '#build/client-contract'
 import { starterResponse } from '#shared/calibration/starter'
 import type { Bench, Process } from '#shared/schemas/benches'
-import type { Aim } from '#shared/schemas/curves'
+import type { Curve } from '#shared/schemas/curves'
 import type { Adjustments, Negative } from '#shared/schemas/negatives'
 import type { Photo } from '#shared/schemas/photos'
 import { largestCrop } from '#shared/sheet/crop'
@@ -11,7 +11,7 @@ import { neutralMix } from '#shared/tone/mix'
 
 /** What decides the tones: a bench with its curve, or a process with its uncalibrated starting curve. */
 export type ToneSource = { kind: 'bench', bench: Bench } | { kind: 'process', process: Process }
-export interface CurveInUse { response: number[], aim: Aim, calibrated: boolean }
+export type CurveInUse = Pick<Curve, 'response' | 'aim' | 'calibrated' | 'colourPath'>
 
 export const neutral = (): Adjustments => ({ mix: { ...neutralMix }, blackPoint: 0, whitePoint: 1, midtone: 0, contrast: 0 })
 
@@ -38,7 +38,7 @@ export function useStart() {
   const shape = computed(() => size.value.widthMm / size.value.heightMm)
   const crop = computed(() => photo.value && largestCrop(photo.value, { quarterTurns: 0, straightenDegrees: 0 }, shape.value))
 
-  const startingCurve = (name: Process): CurveInUse => ({ response: starterResponse(name).response, aim: 'even-lightness', calibrated: false })
+  const startingCurve = (name: Process): CurveInUse => ({ response: starterResponse(name).response, aim: 'even-lightness', calibrated: false, colourPath: null })
 
   async function curveOf(bench: Bench): Promise<CurveInUse> {
     if (!bench.curveInUse) throw new ApiError(422, 'no_curve', 'This bench has no curve in use yet. Put one in use, or take the process’s starting curve.')

@@ -21,6 +21,8 @@ export interface BaseExposure {
   exposureSecondsHigh: number | null
   /** black of the paper through clear film as fitted, L* */
   blackLightness: number
+  /** the strip as fitted, from its shortest exposure to its longest or the base exposure, evenly in log exposure */
+  line: ExposureValue[]
   warnings: Warning[]
 }
 
@@ -54,6 +56,7 @@ export function findBaseExposure(values: readonly ExposureValue[], goal: Exposur
   return {
     exposureSeconds: 10 ** log, exposureSecondsLow: Math.min(10 ** log, 10 ** low), exposureSecondsHigh: Number.isFinite(high) ? Math.max(10 ** log, 10 ** high) : null,
     blackLightness: lightnessFromDensity(curves.reduce((sum, c) => sum + c.weight * c.deepest, 0)),
+    line: lineThrough(curves, [...seconds.map(Math.log10), log]),
     warnings: endWarnings(log, high, Math.log10(Math.min(...seconds)), Math.log10(Math.max(...seconds))),
   }
 }
@@ -65,6 +68,18 @@ function logExposureFor({ curve, x0, slope, shape, deepest, paper }: StripCurve,
   const share = (wanted - paper) / (deepest - paper)
   if (!(share < 1)) return Infinity
   return share > 0 ? x0 + curve.position(share, shape) / slope : -Infinity
+}
+
+const linePlaces = 61
+
+/** The mean of the curves that the strip allows, over the range of these logarithms. */
+function lineThrough(curves: readonly StripCurve[], logs: readonly number[]): ExposureValue[] {
+  const [from, to] = [Math.min(...logs), Math.max(...logs)]
+  return Array.from({ length: linePlaces }, (_, i) => {
+    const log = from + (to - from) * i / (linePlaces - 1)
+    const density = curves.reduce((sum, { curve, x0, slope, shape, deepest, paper, weight }) => sum + weight * (paper + (deepest - paper) * curve.share(slope * (log - x0), shape)), 0)
+    return { exposureSeconds: 10 ** log, lightness: lightnessFromDensity(density) }
+  })
 }
 
 function quantile(sorted: readonly { logExposure: number, weight: number }[], share: number): number {

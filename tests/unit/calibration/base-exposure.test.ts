@@ -25,6 +25,15 @@ describe('the base exposure of a strip', () => {
     expect(Math.abs(Math.log10(found.exposureSecondsHigh!) - meanLog - 1.3 * (highLog - meanLog))).toBeLessThan(0.1)
   })
 
+  it('comes with the strip’s line, falling, through the print it was made from', () => {
+    const { line } = findBaseExposure(strip(8, 12))
+    expect([line[0]!.exposureSeconds, line.at(-1)!.exposureSeconds]).toEqual([expect.closeTo(8, 6), expect.closeTo(8 * 2 ** 5.5, 6)])
+    for (const [i, { exposureSeconds, lightness }] of line.entries()) {
+      expect(Math.abs(lightness - logistic(exposureSeconds)), `${exposureSeconds} s`).toBeLessThan(1.5)
+      if (i > 0) expect(lightness).toBeLessThanOrEqual(line[i - 1]!.lightness)
+    }
+  })
+
   it('is the shortest time within 1 L* of the black (derived from a logistic print)', () => {
     const black = lightnessFromDensity(1.4)
     const wanted = densityFromLightness(black + 1)
