@@ -6,7 +6,7 @@ const bench = 'studios/[studio]/benches/[bench]'
 const profiles = 'studios/[studio]/scanner-profiles/[scanner]'
 
 /** Lightness of a print of logistic response: density 0.08 … 1.4, half of it at 60 s. */
-const lightnessAfter = (seconds: number): number => {
+export const lightnessAfter = (seconds: number): number => {
   const density = 0.08 + 1.32 / (1 + Math.exp(-5 * Math.log10(seconds / 60)))
   return 116 * Math.cbrt(10 ** -density) - 16
 }
