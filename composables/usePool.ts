@@ -1,8 +1,7 @@
-import type { WedgeBrief } from '#shared/schemas/wedges'
-import { countPrints, defaultPool, isChosen, poolEntries, readyIds, type PoolEntry, type PoolReading } from '~/utils/pool'
+import { countPrints, defaultPool, isChosen, poolEntries, readyIds, type PoolEntry, type PoolReading, type PoolWedge } from '~/utils/pool'
 
 /** A bench's readings by wedge print, and which prints go into the next curve. Prints that come later go in as they would have at first. */
-export function usePool(readings: Readonly<Ref<PoolReading[]>>, wedges: Readonly<Ref<Pick<WedgeBrief, 'id' | 'kind'>[]>> = ref([])) {
+export function usePool(readings: Readonly<Ref<PoolReading[]>>, wedges: Readonly<Ref<PoolWedge[]>> = ref([])) {
   const entries = computed(() => poolEntries(readings.value, wedges.value))
   const chosen = ref(defaultPool(entries.value))
   watch(entries, (now, before) => {

@@ -1,9 +1,11 @@
 import type { Reading } from '#shared/schemas/curves'
-import type { WedgeKind } from '#shared/schemas/wedges'
+import type { WedgeBrief, WedgeKind } from '#shared/schemas/wedges'
 import { measuredPoints } from './curve-chart'
 import { markOf, type MarkShape, type PlotDots } from './plot-chart'
 
 export type PoolReading = Pick<Reading, 'id' | 'state' | 'quality' | 'wedgeId' | 'wedgePrintId' | 'printNumber' | 'createdAt' | 'patches' | 'warnings' | 'unit' | 'zero' | 'progress' | 'error' | 'evidence'>
+
+export type PoolWedge = Pick<WedgeBrief, 'id' | 'kind' | 'code'>
 
 /** What counts as one sample: all scans of one wedge print, or one set of measured values. Phone readings of a print stand by themselves. */
 export interface PoolEntry {
@@ -12,6 +14,8 @@ export interface PoolEntry {
   /** the cells of a scattered wedge tell uneven coating from tone; other values are points only. The two are fitted in different ways, never together */
   isScattered: boolean
   printNumber: number | null
+  /** the film’s code, which stands on the print, too; null for values without a film */
+  code: string | null
   /** newest first */
   readings: PoolReading[]
   mark: MarkShape
@@ -21,8 +25,9 @@ export interface PoolEntry {
 const curveKinds: readonly WedgeKind[] = ['scattered', 'numbered']
 
 /** A bench's readings by wedge print, in the order given; those of guides are left out. Each entry keeps its shape whatever is chosen. */
-export function poolEntries(all: readonly PoolReading[], wedges: readonly { id: string, kind: WedgeKind }[] = []): PoolEntry[] {
-  const kindOf = (reading: PoolReading) => wedges.find(wedge => wedge.id === reading.wedgeId)?.kind
+export function poolEntries(all: readonly PoolReading[], wedges: readonly PoolWedge[] = []): PoolEntry[] {
+  const wedgeOf = (reading: PoolReading) => wedges.find(wedge => wedge.id === reading.wedgeId)
+  const kindOf = (reading: PoolReading) => wedgeOf(reading)?.kind
   const readings = all.filter(reading => reading.wedgeId === null || curveKinds.includes(kindOf(reading) ?? 'scattered'))
   const entries = new Map<string, PoolEntry>()
   // From the oldest on, so that a new print takes the next shape and leaves the others theirs.
@@ -31,7 +36,7 @@ export function poolEntries(all: readonly PoolReading[], wedges: readonly { id: 
     const key = `${reading.wedgePrintId ?? reading.id}${isPhone ? ':phone' : ''}`
     const entry = entries.get(key)
     if (entry) entry.readings.unshift(reading)
-    else entries.set(key, { key, isPhone, isScattered: reading.wedgeId !== null && kindOf(reading) !== 'numbered', printNumber: reading.printNumber, readings: [reading], mark: markOf(entries.size) })
+    else entries.set(key, { key, isPhone, isScattered: reading.wedgeId !== null && kindOf(reading) !== 'numbered', printNumber: reading.printNumber, code: wedgeOf(reading)?.code ?? null, readings: [reading], mark: markOf(entries.size) })
   }
   return [...entries.values()].reverse()
 }

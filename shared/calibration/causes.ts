@@ -47,9 +47,13 @@ const leastPrints = 2
  * Why a print came out as it did where a curve is not the cure, each with its evidence in numbers. None found: an empty list.
  * Places that were not read say nothing. Thresholds: 1 L* between places, 2 L* of stain, 0.4 mm of edge, 1 L* of slope.
  */
-export function findCauses({ places, edge, isMirrored, lightSlopes }: CauseInput): FoundCause[] {
+export function findCauses({ places: given, edge, isMirrored, lightSlopes }: CauseInput): FoundCause[] {
+  const places = { ...given, foil: wasLaid(given) ? given.foil : null }
   return [wrongSideUp(isMirrored), exposeLonger(places), moreInk(places), wash(places), pressHarder(edge), rotateTheFrame(lightSlopes)].filter(cause => cause !== null)
 }
+
+/** Foil lets nothing through, so a place darker than full ink had none on it. */
+const wasLaid = ({ foil, fullInk }: DiagnosticPlaces): boolean => foil !== null && (fullInk === null || fullInk - foil <= leastStain)
 
 /** A cause's evidence as the screens and the contract carry it. */
 export const evidenceSays = (evidence: readonly Evidence[]): string =>

@@ -12,7 +12,7 @@ const entries = poolEntries([
   reading('second-scan', { wedgePrintId: 'a', printNumber: 1 }),
   reading('scan', { wedgePrintId: 'a', printNumber: 1 }),
   reading('blurred', { wedgePrintId: 'c', printNumber: 3, state: 'failed', patches: [], error: { code: 'blurred', message: 'The picture is not sharp. Scan it again, flat on the glass.' } }),
-], [{ id: 'w', kind: 'scattered' }])
+], [{ id: 'w', kind: 'scattered', code: '7K4Q2' }])
 
 describe('PoolList', () => {
   it('ticks prints, not scans; leaves the phone’s reading off and says why', async () => {

@@ -30,6 +30,10 @@ describe('the cause of a poor print', () => {
     expect(given({ foil: 88, fullInk: 88, uncoated: 95 })[0]!.message).not.toContain('taken as')
   })
 
+  it('is no stain where no foil was laid and the place printed as black', () => {
+    expect(given({ foil: 18, bare: 18, clear: 18.3, fullInk: 94.1 })).toEqual([])
+  })
+
   it('is no stain on a paper that is itself darker', () => {
     expect(given({ foil: 88, fullInk: 88, uncoated: 88.5 })).toEqual([])
   })

@@ -9,7 +9,7 @@ const reading = (id: string, fields: Partial<PoolReading> = {}): PoolReading => 
 })
 
 /** Newest first, as the service lists them. */
-const wedges = [{ id: 'w', kind: 'scattered' as const }, { id: 'n', kind: 'numbered' as const }, { id: 'g', kind: 'exposure-strip' as const }]
+const wedges = [{ id: 'w', kind: 'scattered' as const, code: '7K4Q2' }, { id: 'n', kind: 'numbered' as const, code: '9M3XW' }, { id: 'g', kind: 'exposure-strip' as const, code: '2H8TP' }]
 const readings = [
   reading('phone-3', { quality: 'phone', wedgeId: 'w', wedgePrintId: 'c', printNumber: 3 }),
   reading('scan-2b', { wedgeId: 'w', wedgePrintId: 'b', printNumber: 2 }),
