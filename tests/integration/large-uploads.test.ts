@@ -9,6 +9,7 @@ import { filmOf, newNegative } from '../support/negatives'
 import { ownInstallation } from '../support/own-installation'
 import { newPicture, uploadForm } from '../support/pictures'
 import { Agent } from '../support/studio'
+import { newWedge } from '../support/wedge-scans'
 
 type Installation = Awaited<ReturnType<typeof ownInstallation>>
 
@@ -18,14 +19,16 @@ const filesBelow = ({ inStorage }: Installation, folder: string) =>
 /** Resident memory of a process, bytes (proc(5), VmRSS in kB). */
 const residentBytes = (pid: number) => 1024 * Number(/VmRSS:\s+(\d+) kB/.exec(readFileSync(`/proc/${pid}/status`, 'utf8'))![1])
 
-const head = '--edge\r\nContent-Disposition: form-data; name="file"; filename="large.png"\r\nContent-Type: image/png\r\n\r\n'
+const headOf = (field: string) => `--edge\r\nContent-Disposition: form-data; name="${field}"; filename="large.png"\r\nContent-Type: image/png\r\n\r\n`
+const head = headOf('file')
 const foot = '\r\n--edge--\r\n'
 const opened = (agent: Agent, path: string, length: number) => httpRequest(new URL(path, agent.address), {
   method: 'POST', headers: { 'content-type': 'multipart/form-data; boundary=edge', 'content-length': length, 'cookie': agent.cookieHeader() },
 })
 
-function sendFile(agent: Agent, path: string, file: string): Promise<number> {
+function sendFile(agent: Agent, path: string, file: string, field = 'file'): Promise<number> {
   return new Promise((resolve, reject) => {
+    const head = headOf(field)
     const sending = opened(agent, path, head.length + statSync(file).size + foot.length)
     sending.on('response', response => resolve(response.resume().statusCode!)).on('error', reject)
     sending.write(head)
@@ -58,6 +61,24 @@ describe('uploads', () => {
     expect(status).toBe(201)
     expect((most - before) / 1e6, 'MB more than before').toBeLessThan(150)
     expect(filesBelow(installation, 'temporary')).toBe(0)
+    await web.stop()
+  }, 180_000)
+
+  it('of scans of 200 MB do so too, and their picture is left to the worker', async () => {
+    const installation = await ownInstallation()
+    const web = await installation.web({ READING_WAIT_SECONDS: '0.1' })
+    const studio = await installation.studioAt(web)
+    const { wedgeId } = await newWedge(studio)
+    const picture = await largePicture()
+    onTestFinished(() => rmSync(dirname(picture), { recursive: true }))
+    const before = residentBytes(web.child.pid!)
+    let most = before
+    const sampling = setInterval(() => most = Math.max(most, residentBytes(web.child.pid!)), 20)
+    const status = await sendFile(studio.agent, `${studio.root}/wedges/${wedgeId}/readings`, picture, 'scan')
+    clearInterval(sampling)
+    expect(status).toBe(202)
+    expect((most - before) / 1e6, 'MB more than before').toBeLessThan(150)
+    expect([filesBelow(installation, 'temporary'), filesBelow(installation, 'scans')]).toEqual([0, 1])
     await web.stop()
   }, 180_000)
 

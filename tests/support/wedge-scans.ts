@@ -3,13 +3,13 @@ import { mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { promisify } from 'node:util'
-import QRCode from 'qrcode'
 import sharp from 'sharp'
 import type { ScanPicture } from '../../shared/calibration/reading/picture'
 import type { WedgePage } from '../../shared/calibration/wedge/page'
 import { paintWedge } from '../../shared/calibration/wedge/paint'
 import { scatteredGrids, scatteredPage } from '../../shared/calibration/wedge/scattered-page'
 import { snapWedgePage } from '../../shared/calibration/wedge/snap'
+import { codeModules } from './scan-simulator/code'
 import { flatbed, type FlatbedPlacement } from './scan-simulator/cameras'
 import { type PrintModel, type SimulatedPrint, simulatePrint } from './scan-simulator/print'
 import { responseOf } from './scan-simulator/scenes'
@@ -18,9 +18,6 @@ import type { InStudio } from './negatives'
 
 /** A wedge's chart: where its parts stand, what stands in its patches, what names it. */
 export interface Chart { page: WedgePage, levels: number[], code: string }
-
-/** The modules of a wedge's code, as any QR library draws them (ISO/IEC 18004, version 1-H). */
-export const codeModules = (code: string): Uint8Array => Uint8Array.from(QRCode.create([{ data: code, mode: 'alphanumeric' }], { errorCorrectionLevel: 'H', version: 1 }).modules.data)
 
 /** A scattered wedge's chart from its record over HTTP. */
 export function chartOfRecord(wedge: { code: string, pixelsPerInch: number, patches: { level: number }[] }): Chart {

@@ -13,6 +13,17 @@ export function peakBytesOf(processId: number | undefined): number {
   }
 }
 
+/** Processor time that a process has used so far, from Linux' own count (proc(5), utime and stime in hundredths); 0 where there is none. */
+export function processorSecondsOf(processId: number | undefined): number {
+  try {
+    const afterName = readFileSync(`/proc/${processId}/stat`, 'utf8').split(') ').at(-1)!.split(' ')
+    return (Number(afterName[11]) + Number(afterName[12])) / 100
+  }
+  catch {
+    return 0
+  }
+}
+
 const lookEveryMs = 5
 
 /** Runs one program to its end. Throws with what it said when it fails or is missing. */

@@ -9,6 +9,8 @@ import { flatbed } from '../../../tests/support/scan-simulator/cameras'
 import type { Scene, WedgeOnFilm } from '../../../tests/support/scan-simulator/scenes'
 import { printOf, randomScene, responseOf, wedgeOnFilm } from '../../../tests/support/scan-simulator/scenes'
 import { takePicture } from '../../../tests/support/scan-simulator/take-picture'
+import { identifyWedge } from '../../image/scan/identity'
+import { throughChild } from './reading-child'
 import type { Measure, Suite } from './suite'
 import { measured } from './suite'
 
@@ -23,17 +25,18 @@ const foundWithinMm = 1
 
 const pages = scatteredGrids.map(grid => snapWedgePage(scatteredPage(grid), 360))
 
-/** Finding, exactness and speed of reading, on simulated scans and phone pictures with seeds. */
-export const run: Suite = async function* () {
+/** Finding, exactness and speed of reading, on simulated scans and phone pictures with seeds; then files through the image child. */
+export const run: Suite = async function* ({ imageChildProgram, folder }) {
   yield* finding('scan')
   yield* finding('phone')
   yield* exactness()
   yield* speed()
+  yield* throughChild(imageChildProgram, folder)
 }
 
-function* finding(kind: 'scan' | 'phone'): Iterable<Measure> {
+async function* finding(kind: 'scan' | 'phone'): AsyncIterable<Measure> {
   const errors: number[] = []
-  let [missed, wrongPage] = [0, 0]
+  let [missed, wrongPage, unnamed, misnamed] = [0, 0, 0, 0]
   for (let seed = 1; seed <= picturesOfEachKind; seed++) {
     const scene = randomScene(seed, kind)
     const located = locateWedge(scene.picture, pages)
@@ -41,10 +44,15 @@ function* finding(kind: 'scan' | 'phone'): Iterable<Measure> {
     const errorPx = located ? cornerErrorPx(scene, located.corners) : Infinity
     if (errorPx < foundWithinMm * pixelsPerMm(scene)) errors.push(errorPx)
     else missed++
+    const code = await identifyWedge(scene.picture, located)
+    if (code === null) unnamed++
+    else if (code !== scene.code) misnamed++
   }
   errors.sort((a, b) => a - b)
   const goal = kind === 'scan' ? 0.3 : null
   yield measured(`${kind}s not found, of ${picturesOfEachKind}`, missed / picturesOfEachKind, 'share', 0.01)
+  yield measured(`${kind}s whose code was not read`, unnamed / picturesOfEachKind, 'share', 0.01)
+  yield measured(`${kind}s taken for another wedge`, misnamed, 'pictures', 0)
   yield measured(`${kind}s taken for another size of wedge`, wrongPage, 'pictures', 0)
   yield measured(`worst corner of a ${kind}, median`, errors[errors.length >> 1] ?? NaN, 'px', goal)
   yield measured(`worst corner of a ${kind}, 95th percentile`, errors[Math.floor(errors.length * 0.95)] ?? NaN, 'px', goal)

@@ -9,6 +9,7 @@ import { snapWedgePage } from '../../../shared/calibration/wedge/snap'
 import type { Camera, Point } from './camera'
 import type { PhonePlacement } from './cameras'
 import { flatbed, phone } from './cameras'
+import { codeModules, codeOfSeed } from './code'
 import type { PrintModel, SimulatedPrint } from './print'
 import { simulatePrint } from './print'
 import type { Optics } from './take-picture'
@@ -18,7 +19,7 @@ import { takePicture } from './take-picture'
 export interface WedgeOnFilm { page: WedgePage, levels: number[] }
 
 /** A picture whose truth is known. */
-export interface Scene extends WedgeOnFilm { print: SimulatedPrint, camera: Camera, picture: ScanPicture, lightnessOf: (level: number) => number }
+export interface Scene extends WedgeOnFilm { code: string, print: SimulatedPrint, camera: Camera, picture: ScanPicture, lightnessOf: (level: number) => number }
 
 /** Resolution of the film files and of the prints made from them. */
 const filmPixelsPerInch = 360
@@ -34,15 +35,9 @@ export function wedgeOnFilm(grid: ScatteredGrid, seed: number): WedgeOnFilm {
 export const responseOf = (black: number, white: number, bend: number) => (level: number): number =>
   black + (white - black) * (1 - Math.cos(Math.PI * level ** bend)) / 2
 
-/** Modules of a stand-in for the code: what matters here is that something of its kind stands there. */
-const modules = (seed: number): number[] => {
-  const random = seededRandom(seed)
-  return Array.from({ length: 441 }, () => random.below(2))
-}
-
-/** The print of a wedge. */
+/** The print of a wedge, whose code follows from the model's seed. */
 export const printOf = ({ page, levels }: WedgeOnFilm, model: PrintModel): SimulatedPrint =>
-  simulatePrint(paintWedge(page, levels, modules(model.seed), filmPixelsPerInch), model)
+  simulatePrint(paintWedge(page, levels, codeModules(codeOfSeed(model.seed)), filmPixelsPerInch), model)
 
 /** Tones of three processes' prints: neutral, blue and brown (a* and b* by L*, from memory of their look). */
 const hues: ((lightness: number) => readonly [number, number])[] = [
@@ -69,7 +64,7 @@ export function randomScene(seed: number, kind: 'scan' | 'phone'): Scene {
   })
   const [camera, optics] = kind === 'scan' ? scanner(wedge.page, random, between) : phoneCamera(wedge.page, random, between)
   const picture = takePicture(print, camera, { seed, hue: hues[random.below(hues.length)], ...optics })
-  return { ...wedge, print, camera, picture, lightnessOf }
+  return { ...wedge, code: codeOfSeed(seed), print, camera, picture, lightnessOf }
 }
 
 type Between = (low: number, high: number) => number
