@@ -121,6 +121,26 @@ describe('a bench', () => {
   })
 })
 
+describe('a scanner’s profile', () => {
+  it('takes the scanner’s own error out of what its scans say, for the bench’s process', async () => {
+    const place = await newWedge(studio)
+    // A scanner that shows everything darker than it is: by 8 L* in the middle, true at both ends.
+    const seenAs = (lightness: number) => lightness - 8 * Math.sin(Math.PI * lightness / 100)
+    const points = Array.from({ length: 21 }, (_, i) => ({ scanned: seenAs(5 * i), measured: 5 * i }))
+    const scanner = (await studio.agent.post(`${studio.root}/scanners`, { name: 'Flatbed by the window' })).body.id as string
+    const profile = await studio.agent.post(`${studio.root}/scanner-profiles/${scanner}`, { process: 'cyanotype', kind: 'grey-scale', points })
+    expect(profile.status, profile.text).toBe(201)
+    const wrong = printOfChart(place.chart, { lightnessOf: level => seenAs(printTone(level)), gradientLightness: 0, mottleLightness: 0 })
+    const bytes = await scanFile(scanOf(wrong, place.chart), 'png')
+    const { item } = await handIn(bytes, { to: `wedges/${place.wedgeId}`, fields: { scannerId: scanner } })
+    expect(item).toMatchObject({ state: 'ready', scannerId: scanner, scannerProfileId: profile.body.id })
+    expect(rms(lightnesses(item), place.chart.levels.map(printTone))).toBeLessThan(0.5)
+    const without = await studio.agent.post(`${studio.root}/readings/${item.id}/read-again`, { scannerId: null })
+    expect(without.body.scannerProfileId).toBeNull()
+    expect(rms(lightnesses(without.body), place.chart.levels.map(printTone))).toBeGreaterThan(4)
+  })
+})
+
 describe('what can’t be read', () => {
   it.each([
     ['no picture', Buffer.from('not a picture at all'), 415, 'not_an_image'],
