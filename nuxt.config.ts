@@ -22,6 +22,7 @@ export default defineNuxtConfig({
   // Public pages are server-rendered; what stands behind sign-in is not, so that nobody's page can be cached.
   routeRules: {
     '/s/**': { ssr: false },
+    '/account': { ssr: false },
   },
   runtimeConfig: {
     session: { name: 'emulside', password: '', maxAge: 60 * 60 * 24 * 30, cookie: { sameSite: 'lax', httpOnly: true, secure: false } },

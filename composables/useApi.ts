@@ -41,7 +41,8 @@ export function useApi() {
 
   async function call<const E extends Endpoint>(row: E, options: CallOptions<E> = {}): Promise<AnswerOf<E>> {
     const answer = await send(row, options as CallOptions<Endpoint>)
-    return (answer.status === 204 ? undefined : await answer.json()) as AnswerOf<E>
+    const text = await answer.text() // 204, and some 202, say nothing more
+    return (text ? JSON.parse(text) : undefined) as AnswerOf<E>
   }
 
   /** For rows that answer with a file. */

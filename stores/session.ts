@@ -18,11 +18,16 @@ export const useSessionStore = defineStore('session', () => {
     if (!user.value) take(await call(contract.me))
   }
 
+  /** Asks again: a studio was joined, a name has changed. */
+  async function refresh() {
+    take(await call(contract.me))
+  }
+
   async function signIn(email: string, password: string) {
     take(await call(contract.login, { body: { email, password } }))
   }
 
-  async function signUp(person: { name: string, email: string, password: string, studioName?: string }) {
+  async function signUp(person: { name: string, email: string, password: string, studioName?: string, invitationToken?: string }) {
     const { user, studio } = await call(contract.register, { body: person })
     take({ user, studios: [studio] })
     return studio
@@ -30,12 +35,16 @@ export const useSessionStore = defineStore('session', () => {
 
   async function signOut() {
     await call(contract.logout)
+    forget()
+  }
+
+  function forget() {
     user.value = null
     studios.value = []
     rememberStudio(undefined)
   }
 
-  return { user, studios, ensure, signIn, signUp, signOut }
+  return { user, studios, take, ensure, refresh, signIn, signUp, signOut, forget }
 })
 
 const studioKey = 'emulside-studio'

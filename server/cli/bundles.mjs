@@ -10,6 +10,7 @@ const programs = {
   'backup': 'server/cli/backup.ts',
   'restore': 'server/cli/restore.ts',
   'bench': 'server/cli/bench.ts',
+  'local-mailbox': 'server/cli/local-mailbox.ts',
   'image-child': 'server/image/child.ts',
 }
 

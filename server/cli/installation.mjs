@@ -1,5 +1,6 @@
 import { randomBytes } from 'node:crypto'
 import { existsSync, mkdirSync, readFileSync, renameSync, writeFileSync } from 'node:fs'
+import { createServer } from 'node:net'
 import { join } from 'node:path'
 import { builtPrograms, dataFolder, inData } from './paths.mjs'
 import { Stop } from './run.mjs'
@@ -21,10 +22,10 @@ export function keepInstallation(kept) {
 }
 
 /** The settings that all processes of an installation get; what the environment already says goes first. */
-export function serviceEnvironment({ databaseUrl, sessionPassword, programs = builtPrograms }) {
+export function serviceEnvironment({ databaseUrl, sessionPassword, mailbox, programs = builtPrograms }) {
   return {
     HOST: '127.0.0.1', PORT: '3000', STORAGE_DIR: inData('files'), NUXT_SESSION_PASSWORD: sessionPassword,
-    NUXT_TELEMETRY_DISABLED: '1',
+    NUXT_TELEMETRY_DISABLED: '1', ...mailbox ? { SMTP_URL: `smtp://127.0.0.1:${mailbox.smtp}` } : {},
     ...process.env,
     ...tls(), DATABASE_URL: databaseUrl, IMAGE_CHILD_PROGRAM: join(programs, 'image-child.mjs'),
   }
@@ -35,4 +36,22 @@ function tls() {
   if (!TLS_CERT) return {}
   if (!TLS_KEY || !NUXT_PUBLIC_URL?.startsWith('https:')) throw new Stop('TLS_CERT needs TLS_KEY (the key\'s file) and NUXT_PUBLIC_URL (the https:// address that people open).')
   return { NITRO_SSL_CERT: readFileSync(TLS_CERT, 'utf8'), NITRO_SSL_KEY: readFileSync(TLS_KEY, 'utf8') }
+}
+
+/** Ports of the local mailbox, the same at each start where they are free; none where a mail server is configured. */
+export async function mailboxPorts(kept) {
+  if (process.env.SMTP_URL) return undefined
+  kept.mailbox = { smtp: await freePort(kept.mailbox?.smtp), page: await freePort(kept.mailbox?.page) }
+  return keepInstallation(kept).mailbox
+}
+
+function freePort(wanted = 0) {
+  return new Promise((resolve, reject) => {
+    const probe = createServer()
+    probe.once('error', error => wanted === 0 ? reject(error) : resolve(freePort()))
+    probe.listen(wanted, '127.0.0.1', () => {
+      const { port } = probe.address()
+      probe.close(() => resolve(port))
+    })
+  })
 }

@@ -7,7 +7,7 @@ import { developmentBundles, watchPrograms } from './bundles.mjs'
 import { migrateDatabase, openDatabaseServer } from './database.mjs'
 import { ensureDemo } from './demo.mjs'
 import { ensureDependencies } from './dependencies.mjs'
-import { readInstallation, serviceEnvironment } from './installation.mjs'
+import { mailboxPorts, readInstallation, serviceEnvironment } from './installation.mjs'
 import { takeLock } from './lock.mjs'
 import { builtPrograms, inData, root, webProgram } from './paths.mjs'
 import { endAside, main, say, Stop } from './run.mjs'
@@ -46,7 +46,8 @@ async function serve(lock) {
   if (development) undo.push((await watchPrograms(programs, () => restartWorker())).stop)
   if (!development) await ensureBuilt()
   migrateDatabase(database, programs)
-  const env = serviceEnvironment({ databaseUrl: database.url, sessionPassword: installation.sessionPassword, programs })
+  const mailbox = await mailboxPorts(installation)
+  const env = serviceEnvironment({ databaseUrl: database.url, sessionPassword: installation.sessionPassword, mailbox, programs })
   const demo = database.external ? undefined : ensureDemo(installation, programs, env)
   const address = `http${process.env.TLS_CERT ? 's' : ''}://${env.HOST.includes(':') ? `[${env.HOST}]` : env.HOST}:${env.PORT}`
   const onGivenUp = (reason) => {
@@ -55,6 +56,13 @@ async function serve(lock) {
   }
   const common = { env, cwd: root, lock, onGivenUp }
   const log = name => development ? undefined : inData('logs', `${name}.log`)
+  if (mailbox) {
+    const post = keepRunning({
+      ...common, name: 'mailbox', program: process.execPath, args: [join(programs, 'local-mailbox.mjs')], logFile: log('mailbox'),
+      env: { PATH: process.env.PATH, MAILBOX_DIR: inData('mailbox'), MAILBOX_SMTP_PORT: String(mailbox.smtp), MAILBOX_PAGE_PORT: String(mailbox.page) },
+    })
+    undo.push(() => post.stop(graceSeconds))
+  }
   const worker = keepRunning({ ...common, name: 'worker', program: process.execPath, args: ['--enable-source-maps', join(programs, 'worker.mjs')], logFile: log('worker') })
   restartWorker = () => worker.restart(graceSeconds)
   const web = keepRunning({ ...common, name: 'web', program: process.execPath, args: webArguments(env), logFile: log('web') })
@@ -62,6 +70,7 @@ async function serve(lock) {
   await untilReady(address)
   say(`\nEmulside is at ${process.env.NUXT_PUBLIC_URL ?? address}`)
   if (demo) say(`Demo sign-in: ${demo.email} (or technician@…, member@…), password: ${demo.password}`)
+  if (mailbox) say(`Letters: http://127.0.0.1:${mailbox.page} (no mail server is configured)`)
   if (!development) say(`Logs: ${inData('logs')}`)
   say('Ctrl-C stops everything.\n')
 }

@@ -3,9 +3,11 @@ import { setTimeout as sleep } from 'node:timers/promises'
 import PgBoss from 'pg-boss'
 import type { Settings } from '../config'
 import { openDatabase } from '../db/client'
+import { eraseWhatIsDue } from '../services/erasure'
 import { closeImageChildren } from '../services/image-child'
 import { jobHandlers, requireHandlers, type JobContext, type JobHandler } from './handlers'
 import { type LeaseSettings, type Report, workOnNext } from './leased-work'
+import { sendNextLetter } from './letter-work'
 import { jobNames, type JobName } from './names'
 import { readingWork } from './reading-work'
 import { filmWork } from './render-work'
@@ -18,13 +20,13 @@ const graceSeconds = 10
 const tidySeconds = 600
 
 /**
- * Makes films one after the other, and beside them reads scans one after the other, as the rows ask for it: woken by jobs, and looking by itself every few seconds for
+ * Makes films, reads scans and sends letters, each kind one after the other, as the rows ask for it: woken by jobs, and looking by itself every few seconds for
  * what a job did not announce (a row whose worker died). Sweeps what dead processes have left.
  */
 export async function runWorker(settings: Settings, report: Report = () => {}): Promise<Worker> {
   requireHandlers()
   openDatabase(settings.DATABASE_URL)
-  const alarms = { films: openAlarm(), readings: openAlarm() }
+  const alarms = { films: openAlarm(), readings: openAlarm(), letters: openAlarm() }
   const boss = await listenForJobs(settings.DATABASE_URL, { wake: kind => alarms[kind].ring() }, report)
   const noMore = new AbortController()
   const breakOff = new AbortController()
@@ -40,6 +42,9 @@ export async function runWorker(settings: Settings, report: Report = () => {}): 
     const read = await workOnNext(readingWork, lease, breakOff.signal, report)
     if (!read) await alarms.readings.next(settings.POLL_SECONDS, noMore.signal)
   })
+  const mail = forever(noMore.signal, report, async () => {
+    if (!await sendNextLetter(report)) await alarms.letters.next(settings.POLL_SECONDS, noMore.signal)
+  })
   const sweeping = forever(noMore.signal, report, async () => {
     const swept = await sweepTemporaryFiles(settings.LEASE_SECONDS)
     if (swept.length) report('sweep.temporary', { files: swept.length })
@@ -51,6 +56,7 @@ export async function runWorker(settings: Settings, report: Report = () => {}): 
     const scansLeft = await sweepScans()
     if (scansLeft.length) report('sweep.scans', { files: scansLeft.length })
     await shrinkPictureCache(settings.PICTURE_CACHE_MAX_BYTES)
+    for (const erased of await eraseWhatIsDue()) report('erasure.done', erased)
     await pause(tidySeconds, noMore.signal)
   })
 
@@ -59,7 +65,7 @@ export async function runWorker(settings: Settings, report: Report = () => {}): 
       noMore.abort()
       await boss.stop({ graceful: false })
       const late = setTimeout(() => breakOff.abort(), 1000 * graceSeconds)
-      await Promise.all([films, scans, sweeping, tidying])
+      await Promise.all([films, scans, mail, sweeping, tidying])
       clearTimeout(late)
       await closeImageChildren()
     },

@@ -4,7 +4,14 @@ import { roles, type Role } from '#shared/schemas/people'
 import { db, type Queryable } from '../db/client'
 import { memberships, studios } from '../db/schema'
 
-export interface Person { id: string, name: string, email: string, sessionId: string, freshAt: Date }
+/** Who calls: signed in by a session, or by a token that may be bound to a studio and to a role at most. */
+export interface Person {
+  id: string
+  name: string
+  email: string
+  session?: { id: string, freshAt: Date }
+  token?: { studioId: string | null, roleCeiling: Role | null }
+}
 
 /** A person inside a studio: every query of studio-owned records starts from one of these. */
 export interface StudioAccess { id: string, slug: string, name: string, role: Role, personId: string }
@@ -24,11 +31,18 @@ export async function accessTo(personId: string, idOrSlug: string, on: Queryable
 }
 
 /** Someone else's studio answers 404, one's own with too low a role 403. */
-export async function enterStudio(person: { id: string }, idOrSlug: string, least: Role): Promise<StudioAccess> {
-  const access = await accessTo(person.id, idOrSlug)
+export async function enterStudio(person: Pick<Person, 'id' | 'token'>, idOrSlug: string, least: Role): Promise<StudioAccess> {
+  const access = withinToken(person.token, await accessTo(person.id, idOrSlug))
   if (!access) throw new ComputeError('not_found', 'There is no such studio, or you are not in it.')
   requireRole(access, least)
   return access
+}
+
+/** What a token may see of a studio: nothing where it is bound to another, else with its role at most. */
+export function withinToken<Access extends { id: string, role: Role }>(token: Person['token'], access: Access | undefined): Access | undefined {
+  if (!token || !access) return access
+  if (token.studioId !== null && token.studioId !== access.id) return undefined
+  return token.roleCeiling !== null && hasRole(access.role, token.roleCeiling) ? { ...access, role: token.roleCeiling } : access
 }
 
 export function requireRole(access: StudioAccess, least: Role): void {

@@ -1,13 +1,12 @@
 import pg from 'pg'
 import { ComputeError } from '#shared/errors'
-import { accessTo } from './access'
 import { hintChannel, type Hint } from './hints'
-import { personOfSession } from './sessions'
 
 export interface HintStream {
   studioId: string
   personId: string
-  sessionId: string
+  /** asked from time to time whether its person may still listen; throws while it can't be told */
+  mayListen: () => Promise<boolean>
   /** tells the listener to read everything again */
   resync: () => void
   send: (hint: Pick<Hint, 'topic' | 'id' | 'revision'>) => void
@@ -58,19 +57,13 @@ export function joinHints(stream: HintStream, recheckSeconds: number): () => voi
   }
   streams.add(stream)
   stream.resync()
-  const recheck = setInterval(() => void mayListen(stream).then(may => may || stream.end()), recheckSeconds * 1000)
+  const recheck = setInterval(() => {
+    // The database may be away for a moment: asked again the next time.
+    stream.mayListen().catch(() => true).then(may => may || stream.end())
+  }, recheckSeconds * 1000)
   return () => {
     clearInterval(recheck)
     streams.delete(stream)
-  }
-}
-
-async function mayListen({ sessionId, personId, studioId }: HintStream): Promise<boolean> {
-  try {
-    return await personOfSession(sessionId) !== undefined && await accessTo(personId, studioId) !== undefined
-  }
-  catch {
-    return true // the database is away for a moment: asked again the next time
   }
 }
 

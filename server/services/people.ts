@@ -1,5 +1,5 @@
 import { randomBytes } from 'node:crypto'
-import { asc, eq, sql } from 'drizzle-orm'
+import { and, asc, eq, ne, sql } from 'drizzle-orm'
 import { v7 as uuidv7 } from 'uuid'
 import type { z } from 'zod'
 import { ComputeError } from '#shared/errors'
@@ -7,22 +7,28 @@ import type { loginBody, registerBody, Role, StudioMembership, User } from '#sha
 import { readSettings } from '../config'
 import { db, type Queryable, type Transaction } from '../db/client'
 import { memberships, studios, users } from '../db/schema'
+import { roleChangedLetter } from '../mail/letters'
+import { requireRole, type StudioAccess } from './access'
 import { recordEvent } from './audit'
+import { hint } from './hints'
+import { joinByInvitation } from './invitations'
+import { postLetter } from './letters'
 import { hashPassword, passwordMatches } from './passwords'
-import { openSession, revokeSession } from './sessions'
+import { requireFound } from './revisions'
+import { openSession, revokeSession, revokeSessionsOf } from './sessions'
 
 export interface SignedIn { sessionId: string, user: User }
 
-/** Makes a person, a studio of their own and a session. */
-export async function register(body: z.infer<typeof registerBody>): Promise<SignedIn & { studio: StudioMembership }> {
-  if (readSettings().REGISTRATION === 'invite') throw new ComputeError('registration_closed', 'This installation is open by invitation only. Ask an owner of a studio to invite you.')
+/** Makes a person and a session: in a studio of their own, or in the one that an invitation names. */
+export async function register({ invitationToken, ...body }: z.infer<typeof registerBody>): Promise<SignedIn & { studio: StudioMembership }> {
+  if (readSettings().REGISTRATION === 'invite' && !invitationToken) throw new ComputeError('registration_closed', 'This installation is open by invitation only. Ask an owner of a studio to invite you.')
   const passwordHash = await hashPassword(body.password)
   return await db().transaction(async (tx) => {
     const [user] = await tx.insert(users).values({ id: uuidv7(), name: body.name, email: body.email, passwordHash })
       .onConflictDoNothing().returning({ id: users.id, name: users.name, email: users.email })
     if (!user) throw new ComputeError('email_taken', 'Somebody has signed up with this e-mail address already. Sign in instead.')
     await recordEvent(tx, { userId: user.id, kind: 'person.registered', recordId: user.id })
-    const studio = await openStudio(tx, user.id, body.studioName ?? `${body.name.slice(0, 100)}’s studio`)
+    const studio = invitationToken ? await joinByInvitation(tx, user.id, invitationToken) : await openStudio(tx, user.id, body.studioName ?? `${body.name.slice(0, 100)}’s studio`)
     return { user, studio, sessionId: await openSession(tx, user.id) }
   })
 }
@@ -32,17 +38,26 @@ export async function signIn({ email, password }: z.infer<typeof loginBody>): Pr
   if (!await passwordMatches(found?.passwordHash, password)) {
     throw new ComputeError('wrong_credentials', 'E-mail address and password don’t belong together. Check both and try again.')
   }
-  const { id, name, email: stored } = found!
-  return await db().transaction(async (tx) => {
-    await recordEvent(tx, { userId: id, kind: 'session.opened' })
-    return { user: { id, name, email: stored }, sessionId: await openSession(tx, id) }
-  })
+  return await db().transaction(tx => signInAs(tx, found!))
+}
+
+/** A session for somebody who has shown who they are. */
+export async function signInAs(tx: Transaction, { id, name, email }: User): Promise<SignedIn> {
+  await recordEvent(tx, { userId: id, kind: 'session.opened' })
+  return { user: { id, name, email }, sessionId: await openSession(tx, id) }
 }
 
 export async function signOut(userId: string, sessionId: string): Promise<void> {
   await db().transaction(async (tx) => {
     await revokeSession(tx, sessionId)
     await recordEvent(tx, { userId, kind: 'session.closed' })
+  })
+}
+
+export async function signOutEverywhere(userId: string): Promise<void> {
+  await db().transaction(async (tx) => {
+    await revokeSessionsOf(tx, userId)
+    await recordEvent(tx, { userId, kind: 'session.all-closed' })
   })
 }
 
@@ -81,10 +96,51 @@ export function slugOf(name: string): string {
 }
 
 /** How many bytes the studio's originals take up. */
-export async function studioDetails(studioId: string): Promise<{ createdAt: string, usage: { bytes: number, maxBytes: number } }> {
+export async function studioDetails(studioId: string): Promise<{ createdAt: string, eraseAfter: string | null, usage: { bytes: number, maxBytes: number } }> {
   const [row] = await db().select({
-    createdAt: studios.createdAt, maxBytes: studios.maxBytes,
+    createdAt: studios.createdAt, eraseAfter: studios.eraseAfter, maxBytes: studios.maxBytes,
     bytes: sql<string>`(select coalesce(sum(bytes), 0) from photos where photos.studio_id = ${studios.id})`,
   }).from(studios).where(eq(studios.id, studioId))
-  return { createdAt: row!.createdAt.toISOString(), usage: { bytes: Number(row!.bytes), maxBytes: row!.maxBytes } }
+  return { createdAt: row!.createdAt.toISOString(), eraseAfter: row!.eraseAfter?.toISOString() ?? null, usage: { bytes: Number(row!.bytes), maxBytes: row!.maxBytes } }
+}
+
+/** The last owner stays one: a studio without an owner could not be run, or erased. */
+export async function changeRole(studio: StudioAccess, personId: string, role: Role): Promise<{ id: string, name: string, role: Role }> {
+  return await db().transaction(async (tx) => {
+    const before = await lockMember(tx, studio.id, personId)
+    if (before.role === 'owner' && role !== 'owner') await requireOtherOwner(tx, studio.id, personId)
+    if (before.role !== role) {
+      await tx.update(memberships).set({ role }).where(and(eq(memberships.studioId, studio.id), eq(memberships.userId, personId)))
+      await recordEvent(tx, { studioId: studio.id, userId: studio.personId, kind: 'person.role-changed', recordId: personId, details: { from: before.role, to: role } })
+      await hint(tx, { studioId: studio.id, topic: 'people', id: personId })
+      await postLetter(tx, { kind: 'studio-notice', to: before.email, userId: personId, studioId: studio.id, content: roleChangedLetter({ studioName: studio.name, role }) })
+    }
+    return { id: personId, name: before.name, role }
+  })
+}
+
+/** Owners take others out; everybody may leave. Their photos and negatives stay theirs, and out of sight until they are back. */
+export async function removePerson(studio: StudioAccess, personId: string): Promise<void> {
+  if (personId !== studio.personId) requireRole(studio, 'owner')
+  await db().transaction(async (tx) => {
+    const { role } = await lockMember(tx, studio.id, personId)
+    if (role === 'owner') await requireOtherOwner(tx, studio.id, personId)
+    await tx.delete(memberships).where(and(eq(memberships.studioId, studio.id), eq(memberships.userId, personId)))
+    await recordEvent(tx, { studioId: studio.id, userId: studio.personId, kind: 'person.left', recordId: personId, details: { role } })
+    await hint(tx, { studioId: studio.id, topic: 'people', id: personId })
+  })
+}
+
+/** Changes of a studio's people wait for one another at its row. */
+async function lockMember(tx: Transaction, studioId: string, personId: string): Promise<{ name: string, email: string, role: Role }> {
+  await tx.select({ id: studios.id }).from(studios).where(eq(studios.id, studioId)).for('no key update')
+  const [member] = await tx.select({ name: users.name, email: users.email, role: memberships.role }).from(memberships)
+    .innerJoin(users, eq(users.id, memberships.userId)).where(and(eq(memberships.studioId, studioId), eq(memberships.userId, personId)))
+  return requireFound(member)
+}
+
+async function requireOtherOwner(tx: Transaction, studioId: string, personId: string): Promise<void> {
+  const [other] = await tx.select({ id: memberships.userId }).from(memberships)
+    .where(and(eq(memberships.studioId, studioId), eq(memberships.role, 'owner'), ne(memberships.userId, personId))).limit(1)
+  if (!other) throw new ComputeError('last_owner', 'This is the studio’s last owner. Make somebody else an owner first, or erase the studio.')
 }

@@ -12,6 +12,10 @@ export const limitRules = {
     { by: 'account-and-address', count: 10, seconds: 900 },
     { by: 'account', count: 100, seconds: 900 },
   ],
+  reset: [{ by: 'address', count: 20, seconds: 3600 }, { by: 'account', count: 5, seconds: 3600 }],
+  link: [{ by: 'address', count: 60, seconds: 900 }],
+  password: [{ by: 'account', count: 10, seconds: 900 }],
+  letters: [{ by: 'account', count: 60, seconds: 3600 }],
 } as const satisfies Record<string, readonly { by: 'address' | 'account' | 'account-and-address', count: number, seconds: number }[]>
 export type LimitedAction = keyof typeof limitRules
 

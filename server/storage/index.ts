@@ -73,6 +73,7 @@ export function openStorage(folder: string) {
     },
     read: (key: string, range?: { start: number, end: number }) => createReadStream(pathOf(key), range),
     remove: (key: string) => rm(pathOf(key), { force: true }),
+    removeFolder: (key: string) => rm(pathOf(key), { force: true, recursive: true }),
     /** keys of all files below a folder, with the time of their last change of any kind */
     async list(below: string): Promise<{ key: string, changedAt: number }[]> {
       const entries = await readdir(pathOf(below), { recursive: true, withFileTypes: true }).catch(() => [])
@@ -98,9 +99,13 @@ async function flush(path: string): Promise<void> {
   await file.sync().finally(() => file.close())
 }
 
+/** The folders that hold a studio's files. */
+export const studioFolders = (studioId: string) => ['originals', 'cache', 'films', 'scans'].map(kind => `${kind}/${studioId}`)
+
 export const storageKeys = {
   original: (studioId: string, photoId: string) => `originals/${studioId}/${photoId}`,
   scan: (studioId: string, readingId: string) => `scans/${studioId}/${readingId}`,
+  pictureFolder: (studioId: string, photoId: string) => `cache/${studioId}/${photoId}`,
   thumbnail: (studioId: string, photoId: string) => `cache/${studioId}/${photoId}/thumbnail.jpg`,
   /** a proxy's, forecast's, wedge preview's or shown scan's bytes, by the hash of what was asked */
   picture: (studioId: string, recordId: string, hash: string) => `cache/${studioId}/${recordId}/${hash}`,

@@ -9,12 +9,13 @@ import { enterStudio } from '../services/access'
 import { answerError } from './answer-error'
 import { refuseForeignOrigin } from './foreign-origin'
 import { bodyLimits, mediaType, readJson, readText } from './read-body'
-import { requireFreshSession, requirePerson } from './require-person'
+import { requireFreshSession, requirePerson, requireSession } from './require-person'
 
 type Parsed<S> = S extends z.ZodType ? z.output<S> : undefined
 type Field<E, K extends string> = E extends Record<K, infer S> ? Parsed<S> : undefined
 type InStudio<E extends Endpoint> = E['access'] extends 'member' | 'technician' | 'owner' ? StudioAccess : undefined
-type SignedIn<E extends Endpoint> = E['access'] extends 'public' ? undefined : Person
+type SessionPerson = Person & { session: NonNullable<Person['session']> }
+type SignedIn<E extends Endpoint> = E['access'] extends 'public' ? undefined : E['access'] extends 'fresh-session' ? SessionPerson : E extends { only: 'session' } ? SessionPerson : Person
 type Body<E extends Endpoint> = E extends { otherBodies: object } ? Field<E, 'body'> | undefined : Field<E, 'body'>
 
 export interface RouteContext<E extends Endpoint> {
@@ -53,12 +54,15 @@ export function defineRoute<const E extends Endpoint>(row: E, handle: (context: 
   })
 }
 
-async function admit(event: H3Event, { access }: Endpoint): Promise<{ person?: Person, studio?: StudioAccess }> {
+async function admit(event: H3Event, { access, only, fresh }: Endpoint): Promise<{ person?: Person, studio?: StudioAccess }> {
   if (access === 'public') return {}
   const person = await requirePerson(event)
+  if (only === 'session') requireSession(person)
   if (access === 'fresh-session') requireFreshSession(person)
   if (access === 'session' || access === 'fresh-session') return { person }
-  return { person, studio: await enterStudio(person, getRouterParam(event, 'studio') ?? '', access) }
+  const studio = await enterStudio(person, getRouterParam(event, 'studio') ?? '', access)
+  if (fresh) requireFreshSession(person) // after the studio: what one may not see says 404 first
+  return { person, studio }
 }
 
 /** Bodies that are neither JSON nor text (uploads) are left in the stream for the route. */

@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { accountEndpoints } from './account'
 import { benchEndpoints } from './benches'
 import { comparisonEndpoints, scannerProfileEndpoints, tabletEndpoints, walkEndpoints } from './calibration'
 import { curveEndpoints } from './curves'
@@ -20,6 +21,5 @@ const serviceEndpoints = {
 
 /** Every route of the service, by name. Validation, types and the OpenAPI document all come from here. */
 export const contract = {
-  ...serviceEndpoints, ...peopleEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints,
-  ...tabletEndpoints, ...scannerProfileEndpoints, ...comparisonEndpoints, ...findingEndpoints, ...photoEndpoints, ...negativeEndpoints, ...wedgeEndpoints,
+  ...serviceEndpoints, ...peopleEndpoints, ...accountEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints, ...tabletEndpoints, ...scannerProfileEndpoints, ...comparisonEndpoints, ...findingEndpoints, ...photoEndpoints, ...negativeEndpoints, ...wedgeEndpoints,
 } satisfies Record<string, Endpoint>

@@ -13,6 +13,10 @@ export interface Endpoint {
   method: 'GET' | 'POST' | 'PATCH' | 'PUT' | 'DELETE'
   path: `/api${string}`
   access: Access
+  /** `session`: a bearer token does not do */
+  only?: 'session'
+  /** beside a role: a session whose person signed in within ten minutes */
+  fresh?: true
   summary: string
   query?: z.ZodType
   /** JSON body */

@@ -33,6 +33,11 @@ const screens: Record<string, { path: (r: Records) => string, stands: string, is
   'pages/s/[studio]/benches/[bench]/readings/[reading].vue': { path: r => `/s/${r.slug}/benches/${r.bench}/readings/${r.reading}`, stands: 'h1' },
   'pages/s/[studio]/shelf/index.vue': { path: r => `/s/${r.slug}/shelf`, stands: 'h1' },
   'pages/s/[studio]/shelf/scanners/[scanner].vue': { path: r => `/s/${r.slug}/shelf/scanners/${r.scanner}`, stands: 'form' },
+  'pages/new-password.vue': { path: () => '/new-password', stands: 'h1', isPublic: true },
+  'pages/confirm-address.vue': { path: () => '/confirm-address', stands: 'h1', isPublic: true },
+  'pages/invitation.vue': { path: () => '/invitation', stands: 'h1', isPublic: true },
+  'pages/account.vue': { path: () => '/account', stands: 'h1' },
+  'pages/s/[studio]/studio.vue': { path: r => `/s/${r.slug}/studio`, stands: 'h1' },
   'pages/s/[studio]/people.vue': { path: r => `/s/${r.slug}/people`, stands: 'h1' },
 }
 

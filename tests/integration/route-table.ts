@@ -1,3 +1,4 @@
+import { accountCases } from './routes/account'
 import { benchCases } from './routes/benches'
 import { calibrationCases } from './routes/calibration'
 import { curveCases } from './routes/curves'
@@ -12,4 +13,4 @@ import { walkCases } from './routes/walk'
 import { wedgeCases } from './routes/wedges'
 
 /** Every handler of the service, each with a good call of it. What must be refused follows from the contract, or is named. */
-export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...shelfCases, ...benchCases, ...curveCases, ...calibrationCases, ...scanCases, ...walkCases, ...photoCases, ...negativeCases, ...wedgeCases]
+export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...accountCases, ...shelfCases, ...benchCases, ...curveCases, ...calibrationCases, ...scanCases, ...walkCases, ...photoCases, ...negativeCases, ...wedgeCases]

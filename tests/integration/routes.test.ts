@@ -4,7 +4,7 @@ import { contract } from '../../shared/schemas/contract'
 import type { Endpoint } from '../../shared/schemas/endpoint'
 import { errorAnswer } from '../../shared/schemas/primitives'
 import { roles } from '../../shared/schemas/people'
-import type { Agent } from '../support/studio'
+import { Agent } from '../support/studio'
 import { routeTable } from './route-table'
 import type { GoodCall, RouteCase } from './routes/route-case'
 import { makeWorld, type World } from './routes/world'
@@ -41,7 +41,7 @@ for (const route of routeTable) describe(route.file, () => {
 
   it('does it for who may', async () => {
     const call = await route.good(world)
-    const answer = await send(await callerFor(row), row, call, route)
+    const answer = await send(await callerFor(row, route), row, call, route)
     expect(answer.status, answer.text).toBe(call.status ?? 200)
   })
 
@@ -72,12 +72,12 @@ for (const route of routeTable) describe(route.file, () => {
 
   if (row.query) it('refuses a query that it does not know', async () => {
     const call = await route.good(world)
-    await expectRefusal(await send(await callerFor(row), row, { ...call, query: { ...call.query, unheardOf: '1' } }), 422, 'invalid_input')
+    await expectRefusal(await send(await callerFor(row, route), row, { ...call, query: { ...call.query, unheardOf: '1' } }), 422, 'invalid_input')
   })
 
   if (row.body) it('refuses a body that it does not know, or can’t read', async () => {
     const { json, ...call } = await route.good(world)
-    const caller = await callerFor(row)
+    const caller = await callerFor(row, route)
     const sendText = (body: string) => send(caller, row, { ...call, body, headers: { 'content-type': 'application/json' } })
     await expectRefusal(await sendText('{"name": '), 400, 'malformed_body')
     await expectRefusal(await sendText(''), 400, 'malformed_body')
@@ -90,7 +90,7 @@ for (const route of routeTable) describe(route.file, () => {
   for (const { why, call } of route.bad ?? []) it(`refuses ${why}`, async () => {
     const { status, code, ...changes } = call(world)
     const good = await route.good(world)
-    const answer = await send(await callerFor(row), row, { ...good, ...changes, params: { ...good.params, ...changes.params } })
+    const answer = await send(await callerFor(row, route), row, { ...good, ...changes, params: { ...good.params, ...changes.params } })
     await expectRefusal(answer, status, code)
   })
 
@@ -101,9 +101,10 @@ for (const route of routeTable) describe(route.file, () => {
   })
 })
 
-/** Somebody who may: signed out for sign-in itself, so that the world's own sessions stay. */
-async function callerFor({ access }: Endpoint): Promise<Agent> {
-  if (access === 'public') return world.anonymous
+/** Somebody who may: a stranger for sign-in itself, so that the world's own sessions stay. */
+async function callerFor({ access }: Endpoint, { caller }: RouteCase): Promise<Agent> {
+  if (caller) return await caller(world)
+  if (access === 'public') return new Agent()
   return { member: world.member, technician: world.technician }[access as string]?.agent ?? world.owner.agent
 }
 

@@ -5,7 +5,7 @@ import { personOfSession } from '../../services/sessions'
 export default defineRoute(peopleEndpoints.logout, async ({ event }) => {
   const sessionId = await sessionIdOf(event)
   const person = sessionId && await personOfSession(sessionId)
-  if (person) await signOut(person.id, person.sessionId)
+  if (person) await signOut(person.id, sessionId)
   await dropSession(event)
   setResponseStatus(event, 204)
 })

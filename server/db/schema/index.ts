@@ -1,4 +1,5 @@
 export * from './people'
+export * from './letters'
 export * from './shelf'
 export * from './scanner-profiles'
 export * from './benches'

@@ -1,14 +1,16 @@
 import { jobNames, type JobName, type JobPayloads } from '../names'
 import { makeRender } from './make-render'
 import { readScan } from './read-scan'
+import { sendLetter } from './send-letter'
 
 /** What a handler may do: the rows hold the work, so a job wakes who works on them. */
-export interface JobContext { wake: (work: 'films' | 'readings') => void }
+export interface JobContext { wake: (work: 'films' | 'readings' | 'letters') => void }
 export type JobHandler<N extends JobName> = (payload: JobPayloads[N], context: JobContext) => Promise<void> | void
 
 export const jobHandlers: { [N in JobName]: JobHandler<N> } = {
   'make-render': makeRender,
   'read-scan': readScan,
+  'send-letter': sendLetter,
 }
 
 /** Every job name has exactly one handler, and every handler a name; else the worker must not start. */

@@ -1,5 +1,5 @@
 import type { contract } from '../../../shared/schemas/contract'
-import type { CallOptions } from '../../support/studio'
+import type { Agent, CallOptions } from '../../support/studio'
 import type { World } from './world'
 
 /** A good call of a route: how to fill its path, what to send and what it answers. */
@@ -13,6 +13,8 @@ export interface RouteCase {
   /** below server/api */
   file: string
   row: keyof typeof contract
+  /** who makes the good calls, where the least role that may call does not do */
+  caller?: (world: World) => Agent | Promise<Agent>
   /** builds what the call needs and tells the call; a fresh one each time */
   good: (world: World) => GoodCall | Promise<GoodCall>
   /** calls that must be refused, besides those that follow from the contract (unknown fields, malformed JSON, ids that are none) */

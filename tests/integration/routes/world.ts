@@ -11,7 +11,7 @@ export async function makeWorld() {
   const [technician, member, outsider] = await Promise.all([newPersonIn(owner.ids.studio, 'technician'), newPersonIn(owner.ids.studio, 'member'), newStudio()])
   const make = async (path: string, json: unknown): Promise<string> => {
     const answer = await owner.agent.post(`${owner.root}/${path}`, json)
-    if (answer.status > 201) throw new Error(`${path} answered ${answer.status}: ${answer.text}`)
+    if (answer.status > 202) throw new Error(`${path} answered ${answer.status}: ${answer.text}`)
     return answer.body.id
   }
   // Photos and negatives are private: here they are the member's.

@@ -15,6 +15,7 @@ describe('boot check of jobs', () => {
     const wake = vi.fn()
     void jobHandlers['make-render']({ studioId: 's', renderId: 'r' }, { wake })
     void jobHandlers['read-scan']({ studioId: 's', readingId: 'r' }, { wake })
-    expect(wake.mock.calls).toEqual([['films'], ['readings']])
+    void jobHandlers['send-letter']({ letterId: 'l' }, { wake })
+    expect(wake.mock.calls).toEqual([['films'], ['readings'], ['letters']])
   })
 })

@@ -1,13 +1,17 @@
 import { peopleEndpoints } from '#shared/schemas/people'
 import { readSettings } from '../../../config'
+import { enterStudio } from '../../../services/access'
 import { joinHints } from '../../../services/hint-hub'
+import type { H3Event } from 'h3'
+import { ComputeError } from '#shared/errors'
 
 const aliveSeconds = 25
 
 export default defineRoute(peopleEndpoints.events, async ({ event, person, studio }) => {
   const stream = createEventStream(event)
   const leave = joinHints({
-    studioId: studio.id, personId: person.id, sessionId: person.sessionId,
+    studioId: studio.id, personId: person.id,
+    mayListen: () => mayStillEnter(event, studio.id),
     resync: () => void stream.push({ event: 'resync', data: '{}' }),
     send: hint => void stream.push(JSON.stringify(hint)),
     end: () => void stream.close(),
@@ -21,3 +25,15 @@ export default defineRoute(peopleEndpoints.events, async ({ event, person, studi
   setResponseHeader(event, 'X-Accel-Buffering', 'no')
   await stream.send()
 })
+
+/** False once the session, the token or the membership has ended; throws when that can't be told. */
+async function mayStillEnter(event: H3Event, studioId: string): Promise<boolean> {
+  try {
+    await enterStudio(await requirePerson(event), studioId, 'member')
+    return true
+  }
+  catch (error) {
+    if (error instanceof ComputeError) return false
+    throw error
+  }
+}

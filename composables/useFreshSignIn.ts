@@ -1,0 +1,43 @@
+import { contract } from '#build/client-contract'
+
+/**
+ * For what asks for a sign-in of the last ten minutes: `attempt` runs the work; where the service wants a fresh one,
+ * the password is asked for (`SignInAgainDialog`) and the work done again.
+ */
+export function useFreshSignIn() {
+  const { call } = useApi()
+  const isAsking = ref(false)
+  const problem = ref<string | null>(null)
+  const isBusy = ref(false)
+  let waiting: (() => Promise<unknown>) | null = null
+
+  async function attempt(work: () => Promise<unknown>): Promise<boolean> {
+    isBusy.value = true
+    problem.value = null
+    try {
+      await work()
+      return true
+    }
+    catch (error) {
+      if (error instanceof ApiError && error.code === 'fresh_sign_in_required') {
+        waiting = work
+        isAsking.value = true
+      }
+      else problem.value = sentenceOf(error)
+      return false
+    }
+    finally {
+      isBusy.value = false
+    }
+  }
+
+  const again = (password: string) => attempt(async () => {
+    await call(contract.signInAgain, { body: { password } })
+    const work = waiting
+    waiting = null
+    isAsking.value = false
+    await work?.()
+  })
+
+  return { attempt, again, isAsking, problem, isBusy }
+}
