@@ -5,18 +5,8 @@ import { ensureBuilt } from '../../server/cli/build.mjs'
 import { takeLock } from '../../server/cli/lock.mjs'
 import { builtPrograms, inData } from '../../server/cli/paths.mjs'
 import { openTestCluster } from './cluster'
-import { type Application, startApplication } from './application'
-
-declare module 'vitest' {
-  export interface ProvidedContext {
-    /** one running application a vitest worker, by pool number */
-    applications: Application[]
-    /** a scratch database, as the role that owns every test database */
-    databaseUrl: string
-    /** the same as superuser, for tests that make databases of their own */
-    superuserUrl: string
-  }
-}
+import { startApplication } from './application'
+import type {} from './provided-context'
 
 /**
  * Builds once, starts a test cluster without fsync, migrates a template, and gives every vitest worker a database

@@ -1,5 +1,6 @@
 import { randomUUID } from 'node:crypto'
 import { inject } from 'vitest'
+import type {} from './provided-context'
 
 /** The application of this vitest worker. */
 export function application() {
