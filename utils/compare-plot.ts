@@ -1,6 +1,6 @@
 import type { Comparison } from '#shared/schemas/calibration'
 import { responseLine, valueAt } from './curve-chart'
-import { formatDecimal, formatFixed } from './figures'
+import { formatFixed } from './figures'
 import { perCentAxis, plain, roundAxis, type Plot } from './plot-chart'
 
 type Compared = Comparison['benches'][number]
@@ -40,7 +40,7 @@ export function comparedFigures([first, second]: Comparison['benches']): Compare
     row('Paper white', one => `L* ${formatFixed(one.paperLightness, 1)}`),
     row('Deepest tone', one => `L* ${formatFixed(one.deepestLightness, 1)}, D ${formatFixed(one.maxDensity, 2)}`),
     row('Range', one => `D ${formatFixed(one.densityRange, 2)}`, 'deepest tone above paper white'),
-    row('Contrast', one => `${formatDecimal(one.contrast, 2)} L*`, 'for each per cent of ink, in the middle tones'),
+    row('Contrast', one => `${formatFixed(one.contrast, 2)} L*`, 'for each per cent of ink, in the middle tones'),
     ...hasEvenness
       ? [row('Texture', evenness('texture'), 'within a patch'), row('Mottle', evenness('mottle'), 'clouds in the coating'), row('Gradient', evenness('gradient'), 'from the middle to the side')]
       : [],
