@@ -1,6 +1,6 @@
 import { setTimeout as sleep } from 'node:timers/promises'
 import { and, eq } from 'drizzle-orm'
-import { ComputeError, type ErrorCode } from '#shared/errors'
+import { ComputeError, errorCodes, type ErrorCode } from '#shared/errors'
 import type { Reading } from '#shared/schemas/curves'
 import { readSettings } from '../config'
 import { db } from '../db/client'
@@ -37,4 +37,10 @@ export async function doneOrNot({ studioId, id }: ReadingRow, unreadable: 'refus
     throw new ComputeError(refusal.code as ErrorCode, refusal.message)
   }
   return { isDone: item.state === 'ready' || item.state === 'failed', item }
+}
+
+/** Whether a reading is done; a failed one is thrown as what it is. Its scan stays and can be read again with corners put by hand. */
+export function requireRead({ state, error }: Reading): boolean {
+  if (state === 'failed') throw new ComputeError(error!.code in errorCodes ? error!.code as ErrorCode : 'wedge_not_found', error!.message)
+  return state === 'ready'
 }

@@ -1,6 +1,8 @@
 import { z } from 'zod'
+import { reading } from './curves'
 import { endpoint } from './endpoint'
 import { id, instant, listOf, listQuery, name, newId, revision, text } from './primitives'
+import { scanMedia } from './scans'
 
 export const processes = ['cyanotype', 'van-dyke', 'salt', 'kallitype', 'platinum-palladium', 'gum', 'carbon', 'other'] as const
 export const process = z.enum(processes)
@@ -95,5 +97,5 @@ export const benchEndpoints = {
   archiveBench: endpoint({ method: 'POST', path: `${root}/:bench/archive`, access: 'technician', summary: 'Put it away; what was made with it stays.', body: z.strictObject({ revision }), answers: { 200: bench } }),
   createStarterBench: endpoint({ method: 'POST', path: '/api/studios/:studio/starter-benches', access: 'member', summary: 'The service’s own bench for a process, with an uncalibrated starter curve.', body: z.strictObject({ process }), answers: { 200: bench, 201: bench } }),
   listBaseExposures: endpoint({ method: 'GET', path: `${root}/:bench/base-exposures`, access: 'member', summary: 'The bench’s base exposures, newest first.', query: listQuery, answers: { 200: listOf(baseExposure) } }),
-  createBaseExposure: endpoint({ method: 'POST', path: `${root}/:bench/base-exposures`, access: 'technician', summary: 'The base exposure from an exposure strip, as a new dated entry.', body: baseExposureBody, answers: { 200: baseExposure, 201: baseExposure } }),
+  createBaseExposure: endpoint({ method: 'POST', path: `${root}/:bench/base-exposures`, access: 'technician', summary: 'The base exposure from an exposure strip, as a new dated entry: from values, a reading, or a scan of the strip’s guide. 202 with the reading where a scan takes longer: send its id as `readingId` once it is ready.', body: baseExposureBody, otherBodies: scanMedia, answers: { 200: baseExposure, 201: baseExposure, 202: reading } }),
 }

@@ -1,6 +1,7 @@
 import { setTimeout as sleep } from 'node:timers/promises'
 import { v7 as uuidv7 } from 'uuid'
 import { beforeAll, describe, expect, it } from 'vitest'
+import { chartOf } from '../../shared/calibration/wedge/chart'
 import type { Reading } from '../../shared/schemas/curves'
 import { sql } from '../support/database'
 import { newStudio } from '../support/studio'
@@ -166,6 +167,20 @@ describe('a reading of a guide', () => {
     expect(body.readingId).toBe(readingId)
     expect(await post(`benches/${bench}/tablets`, { readingId })).toMatchObject({ status: 422, body: { data: { issues: [{ path: 'readingId' }] } } })
     expect(await studio.agent.delete(`${studio.root}/readings/${readingId}`)).toMatchObject({ status: 409, body: { data: { code: 'wrong_state' } } })
+  })
+
+  it('of an exposure strip is taken as a picture too', async () => {
+    const bench = await newBench()
+    // What the lamp does to each window is put into the film, so that one simulator prints guides too.
+    const plan = { kind: 'exposure-strip' as const, grid: '24x16' as const, strip: { firstExposure: 20, unit: 's' as const, steps: 10, stopsPerStep: 0.5 } }
+    const strip = (await post(`benches/${bench}/wedges`, { page, kind: 'exposure-strip', exposureStrip: { firstExposure: 20, unit: 's' } })).body
+    const chart = chartOf(plan, strip.pixelsPerInch)
+    const print = { page: chart.page, levels: chart.patches.map(({ exposure }) => (lightnessAfter(exposure!) - 15) / 80), code: strip.code }
+    const picture = scanOf(printOfChart(print, { lightnessOf: level => 15 + 80 * level, gradientLightness: 0, mottleLightness: 0, textureLightness: 1 }), print)
+    const { status, body } = await studio.agent.call('POST', `${studio.root}/benches/${bench}/base-exposures`, { body: scanForm(await scanFile(picture)) })
+    expect(status, JSON.stringify(body)).toBe(201)
+    expect(Math.abs(Math.log2(body.exposureSeconds / 313))).toBeLessThan(0.3)
+    expect((await get(`readings/${body.readingId}`)).body).toMatchObject({ state: 'ready', wedgeId: strip.id })
   })
 
   it('of a step tablet gives the paper’s scale', async () => {
