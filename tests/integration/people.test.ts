@@ -126,7 +126,7 @@ describe('what is no route', () => {
   it('answers in the contract’s shape', async () => {
     const agent = new Agent()
     expect((await agent.get('/api/nothing')).body).toMatchObject({ statusCode: 404, data: { code: 'not_found' } })
-    const wrong = await agent.call('PUT', '/api/me')
+    const wrong = await agent.call('PUT', '/api/openapi.json')
     expect(wrong.body).toMatchObject({ statusCode: 405, data: { code: 'method_not_allowed' } })
     expect(wrong.headers.get('allow')).toBe('GET, HEAD')
   })

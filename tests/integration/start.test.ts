@@ -50,7 +50,7 @@ describe('the start command', () => {
     const server = serverPid()
     first.child.kill('SIGKILL')
     await first.exited
-    expect(orphans).toHaveLength(2)
+    expect(orphans).toHaveLength(3) // web, worker, and the local mailbox
     expect(orphans.every(({ pid, birth }) => birthOf(pid) === birth)).toBe(true)
 
     const second = start()
