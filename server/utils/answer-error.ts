@@ -19,6 +19,7 @@ export function errorAnswerOf(error: unknown): ErrorAnswer {
 
 export function answerError(event: H3Event, error: unknown): ErrorAnswer {
   const answer = errorAnswerOf(error)
+  event.node.req.resume() // the rest of a refused body is read away: a sender in the middle of it gets the answer, not a reset
   if (answer.statusCode === 500) log('error', 'request.error', { requestId: event.context.requestId, error })
   if (event.node.res.headersSent) {
     event.node.res.destroy() // half an answer must not look like a whole one

@@ -1,4 +1,4 @@
-import { getHeader, getRequestHeader, setResponseHeader, type H3Event } from 'h3'
+import { getHeader, getRequestHeader, type H3Event } from 'h3'
 import { ComputeError } from '#shared/errors'
 
 export const bodyLimits = { jsonBytes: 2_000_000, readingsTextBytes: 10_000_000 } as const
@@ -7,17 +7,14 @@ export function mediaType(event: H3Event): string {
   return (getHeader(event, 'content-type') ?? '').split(';')[0]!.trim().toLowerCase()
 }
 
-/** The body as UTF-8 text. Stops reading at `maxBytes`, before anything is parsed. */
+/** The body as UTF-8 text. Stops reading at `maxBytes`, before anything is parsed; the connection stays open for the answer. */
 export async function readText(event: H3Event, maxBytes: number): Promise<string> {
-  const tooLarge = () => {
-    setResponseHeader(event, 'Connection', 'close')
-    return new ComputeError('body_too_large', `The body is larger than ${maxBytes / 1e6} MB, which is the most that is read here.`)
-  }
+  const tooLarge = () => new ComputeError('body_too_large', `The body is larger than ${maxBytes / 1e6} MB, which is the most that is read here.`)
   if ((getRequestHeader(event, 'content-encoding') ?? 'identity') !== 'identity') throw new ComputeError('unsupported_media', 'Send the body without compression.')
   if (Number(getHeader(event, 'content-length') ?? 0) > maxBytes) throw tooLarge()
   const chunks: Buffer[] = []
   let bytes = 0
-  for await (const chunk of event.node.req as AsyncIterable<Buffer>) {
+  for await (const chunk of event.node.req.iterator({ destroyOnReturn: false }) as AsyncIterable<Buffer>) {
     bytes += chunk.length
     if (bytes > maxBytes) throw tooLarge()
     chunks.push(chunk)

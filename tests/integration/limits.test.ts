@@ -1,3 +1,5 @@
+import { once } from 'node:events'
+import { connect as connectTo } from 'node:net'
 import { join } from 'node:path'
 import { describe, expect, it, onTestFinished } from 'vitest'
 import { builtPrograms } from '../../server/cli/paths.mjs'
@@ -84,5 +86,27 @@ describe('an open stream of hints', () => {
       await again.body!.cancel()
       return again.status
     }).toBe(200)
+  })
+})
+
+describe('a body past its limit', () => {
+  const megabyte = Buffer.alloc(1e6, '0,1\n')
+  it.each([
+    ['said beforehand', 'Content-Length: 30000000', [megabyte]],
+    ['found out on the way', 'Transfer-Encoding: chunked', [Buffer.from(`${megabyte.length.toString(16)}\r\n`), megabyte, Buffer.from('\r\n')]],
+  ])('is refused with an answer that reaches a sender who first sends all of it, %s', async (_, length, piece) => {
+    const { agent, root } = await newStudio()
+    const { body: bench } = await agent.post(`${root}/benches`, { name: 'Loft table', process: 'cyanotype' })
+    const { hostname, port } = new URL(agent.address)
+    for (let i = 0; i < 5; i++) {
+      const socket = connectTo({ host: hostname, port: Number(port) })
+      socket.write(`POST ${root}/benches/${bench.id}/readings HTTP/1.1\r\nHost: ${hostname}:${port}\r\nCookie: ${agent.cookieHeader()}\r\nContent-Type: text/csv\r\n${length}\r\n\r\n`)
+      for (const bytes of Array<Buffer[]>(30).fill(piece).flat()) {
+        if (!socket.write(bytes)) await once(socket, 'drain')
+      }
+      const [answer] = await once(socket, 'data') as [Buffer]
+      expect(answer.toString()).toMatch(/^HTTP\/1.1 413 /)
+      socket.destroy()
+    }
   })
 })
