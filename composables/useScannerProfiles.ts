@@ -1,21 +1,17 @@
 import { contract } from '#build/client-contract'
 import type { z } from 'zod'
 import type { ScannerProfile, scannerProfileBody } from '#shared/schemas/calibration'
-import type { ShelfItem } from '#shared/schemas/shelf'
 
 /** A scanner of the shelf with what the service has been taught about it; the newest profile of a process counts. */
 export function useScannerProfiles(scannerId: string) {
   const { call } = useApi()
   const studio = useStudioStore()
   const params = { ...studio.params, scanner: scannerId }
-  const scanner = shallowRef<ShelfItem | null>(null)
+  const { record: scanner, reload: readScanner, error: scannerError, takeOff, putBack } = useShelfRecord('scanners', scannerId)
   const profiles = usePages<ScannerProfile>(cursor => call(contract.listScannerProfiles, { params, query: { cursor, limit: 100 } }))
-  const error = ref<string | null>(null)
+  const error = computed(() => scannerError.value ?? profiles.error.value)
 
-  const reload = async () => (error.value = await sentenceIfFailed(async () => {
-    const [item] = await Promise.all([call(contract.shelfItem, { params: { ...studio.params, shelf: 'scanners', item: scannerId } }), profiles.readAll()])
-    scanner.value = item
-  }))
+  const reload = () => Promise.all([readScanner(), profiles.readAll()])
   useHints(['scanners', 'scanner-profiles'], reload)
 
   async function teach(body: z.input<typeof scannerProfileBody>) {
@@ -28,5 +24,5 @@ export function useScannerProfiles(scannerId: string) {
     await profiles.readAll()
   }
 
-  return { scanner, profiles: profiles.items, error, reload, teach, putAway }
+  return { scanner, profiles: profiles.items, error, reload, teach, putAway, takeOff, putBack }
 }

@@ -1,5 +1,8 @@
 import { contract } from '#build/client-contract'
-import type { ShelfItem, ShelfKind } from '#shared/schemas/shelf'
+import { drawerWords } from '~/utils/shelf-words'
+import type { ShelfItem, ShelfKind, ShelfRecord } from '#shared/schemas/shelf'
+import type { Bench } from '#shared/schemas/benches'
+import { writtenFacts, type ShelfDraft } from '~/utils/shelf-draft'
 
 /** One drawer of the shelf. */
 export function useDrawer(kind: ShelfKind) {
@@ -8,24 +11,46 @@ export function useDrawer(kind: ShelfKind) {
   const params = { ...studio.params, shelf: kind }
   const pages = usePages<ShelfItem>(cursor => call(contract.listShelf, { params, query: { cursor, limit: 100 } }))
 
-  async function add(name: string, notes?: string) {
-    const item = await call(contract.createShelfItem, { params, body: { name, notes } })
+  async function add(name: string) {
+    const item = await call(contract.createShelfItem, { params, body: { name } })
     pages.items.value = [item, ...pages.items.value]
     return item
   }
 
-  async function change(item: ShelfItem, fields: { name?: string, notes?: string }) {
-    const changed = await call(contract.changeShelfItem, { params: { ...params, item: item.id }, body: { ...fields, revision: item.revision } })
-    pages.items.value = pages.items.value.map(other => other.id === changed.id ? changed : other)
-  }
-
-  async function archive(item: ShelfItem) {
-    await call(contract.archiveShelfItem, { params: { ...params, item: item.id }, body: { revision: item.revision } })
-    pages.items.value = pages.items.value.filter(other => other.id !== item.id)
-  }
-
   useHints([kind], pages.readAll)
-  return { items: pages.items, isRead: pages.isRead, error: pages.error, read: pages.readAll, add, change, archive }
+  return { items: pages.items, isRead: pages.isRead, error: pages.error, read: pages.readAll, add }
+}
+
+/** The whole shelf, or what holds all of some words; `off`: what was taken off it. */
+export function useShelfSearch(wanted: () => { words: string, off: boolean }) {
+  const { call } = useApi()
+  const studio = useStudioStore()
+  const pages = usePages<ShelfItem>((cursor) => {
+    const { words, off } = wanted()
+    return call(contract.searchShelf, { params: studio.params, query: { cursor, limit: 100, words: words || undefined, archived: off ? 'true' : undefined } })
+  })
+  useHints(Object.keys(drawerWords), pages.readAll)
+  return pages
+}
+
+/** One thing's record: what is known of it, where it is used, and what is done with it. */
+export function useShelfRecord(kind: ShelfKind, id?: string) {
+  const { call } = useApi()
+  const studio = useStudioStore()
+  const drawer = { ...studio.params, shelf: kind }
+  const params = { ...drawer, item: id ?? '' }
+  const record = shallowRef<ShelfRecord | null>(null)
+  const error = ref<string | null>(null)
+  const bodyOf = (draft: ShelfDraft) => ({ name: draft.name, notes: draft.notes, facts: writtenFacts(kind, draft) })
+
+  const reload = async () => (error.value = await sentenceIfFailed(async () => (record.value = await call(contract.shelfItem, { params }))))
+  const create = (draft: ShelfDraft) => call(contract.createShelfItem, { params: drawer, body: bodyOf(draft) })
+  const change = (draft: ShelfDraft, revision: number) => call(contract.changeShelfItem, { params, body: { ...bodyOf(draft), revision } })
+  async function move(to: 'archiveShelfItem' | 'restoreShelfItem') {
+    await call(contract[to], { params, body: { revision: record.value!.revision } })
+    await reload()
+  }
+  return { record, error, reload, create, change, takeOff: () => move('archiveShelfItem'), putBack: () => move('restoreShelfItem') }
 }
 
 /** The drawers that a bench is put together from. */
@@ -35,24 +60,22 @@ export function useBenchShelf() {
   return { drawers, read }
 }
 
-/** Names of shelf things by id, also of those that have been taken off the shelf since. */
-export function useShelfNames() {
+const drawerOf = { paperId: 'papers', sensitizerId: 'sensitizers', filmId: 'films', inkjetId: 'inkjets', lampId: 'lamps' } as const
+type MaterialIds = Pick<Bench, keyof typeof drawerOf>
+
+/** What a bench is put together from, by id, also what has been taken off the shelf since. */
+export function useBenchMaterials() {
   const { call } = useApi()
   const studio = useStudioStore()
-  const names = shallowReactive(new Map<string, string>())
-  const kinds = { paperId: 'papers', sensitizerId: 'sensitizers', filmId: 'films', inkjetId: 'inkjets', lampId: 'lamps' } as const
+  const items = shallowReactive(new Map<string, ShelfItem>())
 
-  async function read(record: { [K in keyof typeof kinds]: string | null }) {
-    const wanted = Object.entries(kinds).flatMap(([field, shelf]) => {
-      const item = record[field as keyof typeof kinds]
-      return item && !names.has(item) ? [{ shelf, item }] : []
-    })
-    await Promise.all(wanted.map(async ({ shelf, item }) => {
-      const { name } = await call(contract.shelfItem, { params: { ...studio.params, shelf, item } })
-      names.set(item, name)
+  async function read(bench: MaterialIds) {
+    await Promise.all(Object.entries(drawerOf).map(async ([field, shelf]) => {
+      const item = bench[field as keyof MaterialIds]
+      if (item) items.set(item, await call(contract.shelfItem, { params: { ...studio.params, shelf, item } }))
     }))
   }
 
-  const nameOf = (id: string | null) => id && (names.get(id) ?? null)
-  return { read, nameOf }
+  const itemOf = (id: string | null) => (id && items.get(id)) || null
+  return { read, itemOf }
 }

@@ -1,5 +1,6 @@
 import { formatSize, type SizeMm } from '#shared/sheet/sizes'
 import type { LengthUnit } from '~/composables/usePreferences'
+import { figureLocale } from './figures'
 
 /** A size in the preferred unit, as the screens write it. */
 export const showSize = (size: SizeMm, unit: LengthUnit): string => formatSize(size, unit === 'inch' ? 'in' : 'mm', figureLocale())

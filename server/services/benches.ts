@@ -4,7 +4,7 @@ import type { z } from 'zod'
 import { ComputeError } from '#shared/errors'
 import { combination, type Bench, type benchBody, type benchCopy, type benchPatch } from '#shared/schemas/benches'
 import { db, type Queryable, type Transaction } from '../db/client'
-import { baseExposures, benches, curves, readings, wedgePrints } from '../db/schema'
+import { baseExposures, benches, curves } from '../db/schema'
 import type { StudioAccess } from './access'
 import { recordEvent } from './audit'
 import { addBaseExposure } from './base-exposures'
@@ -12,6 +12,7 @@ import { bodyHashOf, createOnce, idFor } from './creation'
 import { hint } from './hints'
 import { keyset, toPage, type Page } from './paging'
 import { requireCurrent, requireFound } from './revisions'
+import { printedBenches } from './shelf-uses'
 
 export type BenchRow = typeof benches.$inferSelect
 type Combination = Omit<z.infer<typeof benchBody>, 'id' | 'name' | 'baseExposure'>
@@ -99,15 +100,10 @@ async function update(tx: Transaction, studio: StudioAccess, { id }: BenchRow, v
 async function requireChangeable(tx: Transaction, bench: BenchRow, changes: Record<string, unknown>): Promise<void> {
   const before = combinationOf(bench)
   const changed = Object.entries(changes).filter(([field, value]) => value !== undefined && bodyHashOf({ value }) !== bodyHashOf({ value: before[field as keyof typeof before] }))
-  if (!changed.length || !(bench.starter || await isPrinted(tx, bench))) return
+  if (!changed.length || !(bench.starter || (await printedBenches(tx, bench.studioId, [bench.id])).has(bench.id))) return
   throw new ComputeError('combination_fixed',
     `${bench.starter ? 'This bench is the service’s own, so its combination stays.' : 'This bench has wedge prints or readings, and they hold for its combination only.'} Make a copy of it (POST …/benches/${bench.id}/copy) with the change; they stay with this one.`,
     changed.map(([path]) => ({ path, message: 'Change this in a copy.' })))
-}
-
-async function isPrinted(on: Queryable, { studioId, id }: BenchRow): Promise<boolean> {
-  const rowsOf = (table: typeof readings | typeof wedgePrints) => on.select({ id: table.id }).from(table).where(and(eq(table.studioId, studioId), eq(table.benchId, id))).limit(1)
-  return (await rowsOf(readings)).length > 0 || (await rowsOf(wedgePrints)).length > 0
 }
 
 const combinationOf = (row: BenchRow) => Object.fromEntries(Object.keys(combination).map(field => [field, row[field as keyof typeof combination]])) as Pick<BenchRow, keyof typeof combination>
@@ -132,14 +128,15 @@ async function viewsOf(on: Queryable, studioId: string, rows: BenchRow[]): Promi
     benchId: curves.benchId, id: curves.id, version: curves.version, calibrated: curves.calibrated, assumptions: curves.assumptions,
     blackLightness: sql<number>`(${curves.response}->>0)::float8`, whiteLightness: sql<number>`(${curves.response}->>1024)::float8`,
   }).from(curves).where(and(eq(curves.studioId, studioId), inArray(curves.benchId, ids), eq(curves.state, 'in-use')))
+  const printed = await printedBenches(on, studioId, ids)
   return new Map(rows.map((row) => {
     const exposure = exposures.find(e => e.benchId === row.id)
     const curve = inUse.find(c => c.benchId === row.id)
-    return [row.id, shown(row, exposure, curve)]
+    return [row.id, { ...shown(row, exposure, curve), combinationFixed: row.starter || printed.has(row.id) }]
   }))
 }
 
-function shown(row: BenchRow, exposure: typeof baseExposures.$inferSelect | undefined, curve: (NonNullable<Bench['curveInUse']> & { assumptions: string[] }) | undefined): Bench {
+function shown(row: BenchRow, exposure: typeof baseExposures.$inferSelect | undefined, curve: (NonNullable<Bench['curveInUse']> & { assumptions: string[] }) | undefined): Omit<Bench, 'combinationFixed'> {
   const { studioId: _, bodyHash: __, archivedAt, createdAt, ...fields } = row
   return {
     ...fields,

@@ -1,7 +1,7 @@
 import { and, eq, inArray, type SQL } from 'drizzle-orm'
 import { ComputeError } from '#shared/errors'
 import { db, type Queryable } from '../db/client'
-import { benches, curves, negatives, photos } from '../db/schema'
+import { benches, curves, films, inkjets, negatives, photos } from '../db/schema'
 import type { StudioAccess } from './access'
 
 export type NegativeRow = typeof negatives.$inferSelect
@@ -12,6 +12,9 @@ export interface NegativeParts {
   negative: NegativeRow
   photo: typeof photos.$inferSelect
   bench: typeof benches.$inferSelect
+  /** the bench's film and inkjet, as far as the shelf knows them */
+  film: Pick<typeof films.$inferSelect, 'facts'> | null
+  inkjet: Pick<typeof inkjets.$inferSelect, 'name' | 'facts'> | null
   curve: CurveRow
   /** the bench's curve in use, whichever the negative was made with */
   inUse: Pick<CurveRow, 'id' | 'version' | 'inUseSince'> | undefined
@@ -22,9 +25,11 @@ export const seenBy = (studio: StudioAccess) => and(eq(negatives.studioId, studi
 
 /** Reads negatives with their parts, each curve once: its table is large, and many negatives share it. */
 export async function readParts(where: SQL | undefined, order: SQL, limit: number, on: Queryable = db()): Promise<NegativeParts[]> {
-  const rows = await on.select({ negative: negatives, photo: photos, bench: benches }).from(negatives)
+  const rows = await on.select({ negative: negatives, photo: photos, bench: benches, film: { facts: films.facts }, inkjet: { name: inkjets.name, facts: inkjets.facts } }).from(negatives)
     .innerJoin(photos, and(eq(photos.studioId, negatives.studioId), eq(photos.id, negatives.photoId)))
     .innerJoin(benches, and(eq(benches.studioId, negatives.studioId), eq(benches.id, negatives.benchId)))
+    .leftJoin(films, and(eq(films.studioId, benches.studioId), eq(films.id, benches.filmId)))
+    .leftJoin(inkjets, and(eq(inkjets.studioId, benches.studioId), eq(inkjets.id, benches.inkjetId)))
     .where(where).orderBy(order).limit(limit)
   if (rows.length === 0) return []
   const { studioId } = rows[0]!.negative

@@ -7,8 +7,8 @@ import type { NegativeParts } from './negative-parts'
 
 /** Below this a print looks soft from reading distance: common practice, no source. */
 const fewPixelsPerInch = 180
-/** Resolutions that inkjets take without rescaling. */
-const nativePixelsPerInch = [300, 360, 600, 720]
+/** Resolutions that inkjets take without rescaling, where the bench's own inkjet says nothing of it. */
+const usualPixelsPerInch = [300, 360, 600, 720]
 /** The least margin in which ruler and label find room. */
 export const marksLeastMarginMm = 6
 
@@ -28,7 +28,7 @@ function otherMirror({ negative, bench }: NegativeParts): Warning | undefined {
 }
 
 /** The curve holds for the way on which the wedge reached the film. */
-function otherPath({ negative, bench, curve }: NegativeParts, formats: FilmFormat[]): Warning[] {
+function otherPath({ negative, bench, curve, inkjet }: NegativeParts, formats: FilmFormat[]): Warning[] {
   const { pixelsPerInch } = negative.settings
   const { path } = bench
   const warnings: Warning[] = []
@@ -40,8 +40,10 @@ function otherPath({ negative, bench, curve }: NegativeParts, formats: FilmForma
       warnings.push({ code: 'other_file_kind', message: `This file is ${format.toUpperCase()}; ${bench.name} ${curve.calibrated ? 'was calibrated' : 'is set up'} with ${path.fileKind.toUpperCase()}. Print a small patch of each before you trust it.` })
     }
   }
-  if (path.pixelsPerInch === undefined && !nativePixelsPerInch.includes(pixelsPerInch)) {
-    warnings.push({ code: 'resolution_not_native', message: `Inkjets take ${nativePixelsPerInch.join(', ')} pixels per inch as they are; ${pixelsPerInch} may be rescaled on the way.` })
+  const native = inkjet?.facts.nativePixelsPerInch ?? usualPixelsPerInch
+  if (path.pixelsPerInch === undefined && !native.includes(pixelsPerInch)) {
+    const takes = inkjet?.facts.nativePixelsPerInch ? `${inkjet.name} takes` : 'Inkjets take'
+    warnings.push({ code: 'resolution_not_native', message: `${takes} ${native.join(', ')} pixels per inch without rescaling; ${pixelsPerInch} may be rescaled on the way.` })
   }
   return warnings
 }

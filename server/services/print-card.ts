@@ -7,8 +7,8 @@ import { filmSize } from './film-order'
 import type { NegativeParts } from './negative-parts'
 import { negativeWarnings } from './negative-warnings'
 
-/** Minutes a film dries before it touches paper; ten is the least: common practice, no source. */
-const dryingMinutes = 30
+/** Minutes a film dries before it touches paper, where its own time is not known; ten is the least: common practice, no source. */
+const usualDryingMinutes = 30
 const leastDryingMinutes = 10
 
 export interface PrintCard { title: string, lines: { label: string, text: string }[] }
@@ -21,20 +21,26 @@ export async function printCard(parts: NegativeParts, format: FilmFormat): Promi
     lines: [
       ...negativeWarnings(parts, [format]).map(({ code, message }) => ({ label: code === 'uncalibrated' ? 'Uncalibrated' : 'Mind', text: message })),
       { label: 'Nozzle check', text: 'Print one first. A missing line in it is a stripe in the print.' },
-      { label: 'Film side', text: filmSide(bench.path.filmSide) },
+      { label: 'Film side', text: filmSide(bench.path.filmSide ?? parts.film?.facts.coatedSide) },
       { label: 'Scale', text: 'Actual size, 100 %. No fitting, no shrinking to a printable area.' },
       { label: 'Colour adjustment', text: 'Off. The numbers in the file are ink levels; nothing may change them.' },
       ...inkjetSettings(parts),
       { label: 'Printed size', text: printedSize(parts) },
-      { label: 'Drying', text: `${dryingMinutes} minutes before the film touches paper. ${leastDryingMinutes} are the least, by common practice.` },
+      { label: 'Drying', text: drying(parts.film?.facts.dryingMinutes) },
       { label: 'On the paper', text: negative.settings.mirror ? 'Printed side down on the coated side: through the film’s back the picture reads right.' : 'This film is not mirrored: it lies with its printed side up, or the process turns the picture over by itself.' },
       { label: 'Base exposure', text: await baseExposure(parts) },
     ],
   }
 }
 
+const drying = (learned?: number): string => learned === undefined
+  ? `${usualDryingMinutes} minutes before the film touches paper. ${leastDryingMinutes} are the least, by common practice.`
+  : `${learned} minutes before the film touches paper, as learned of this film.${learned < leastDryingMinutes ? ` ${leastDryingMinutes} are the least, by common practice.` : ''}`
+
+const sentence = (text: string): string => `${text[0]!.toUpperCase()}${text.slice(1).replace(/\.$/, '')}.`
+
 const filmSide = (known?: string): string =>
-  `${known ? `${known}. ` : ''}Ink goes on the coated side: it is the duller one, and a moistened fingertip sticks to it at a corner.`
+  `${known ? `${sentence(known)} ` : ''}Ink goes on the coated side: it is the duller one, and a moistened fingertip sticks to it at a corner.`
 
 function inkjetSettings({ bench: { path } }: NegativeParts) {
   const settings = [

@@ -60,6 +60,8 @@ export const bench = z.object({
   recipe, path, ink, readingChannel, mirror: z.boolean(),
   /** true for the service’s own benches, whose curve rests on printed assumptions only */
   starter: z.boolean(),
+  /** true once it has wedge prints or readings, and for a starter: another combination is a copy */
+  combinationFixed: z.boolean(),
   assumptions: z.array(z.string()),
   baseExposure: z.object({ value: z.number(), unit: exposureUnit, low: z.number().nullable(), high: z.number().nullable(), since: instant }).nullable(),
   curveInUse: curveBrief.nullable(),

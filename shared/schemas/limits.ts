@@ -1,6 +1,8 @@
 /** Bounds that tables, forms and schemas share. */
 export const limits = {
   nameLength: 120,
+  /** one line of a record */
+  lineLength: 200,
   textLength: 2000,
   emailLength: 254,
   passwordMinLength: 10,

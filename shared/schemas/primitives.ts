@@ -10,7 +10,7 @@ export const text = z.string().max(limits.textLength)
 export const instant = z.iso.datetime({ offset: true })
 export const revision = z.number().int().min(1)
 export const fraction = z.number().min(0).max(1)
-export const sideMm = z.number().min(limits.sideMinMm).max(limits.sideMaxMm)
+export const sideMm = z.number('A side is needed.').min(limits.sideMinMm).max(limits.sideMaxMm)
 
 export const listQuery = z.strictObject({
   cursor: z.uuid().optional(),

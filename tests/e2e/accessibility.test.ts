@@ -8,7 +8,7 @@ import { newStudio } from '../support/studio'
 
 useBrowser()
 
-interface Records { slug: string, photo: string, negative: string, bench: string, wedge: string, reading: string, scanner: string }
+interface Records { slug: string, photo: string, negative: string, bench: string, wedge: string, reading: string, scanner: string, sensitizer: string }
 
 /** Every screen, by its page file: where it is, and what is there once it stands. */
 const screens: Record<string, { path: (r: Records) => string, stands: string, isPublic?: boolean }> = {
@@ -32,6 +32,9 @@ const screens: Record<string, { path: (r: Records) => string, stands: string, is
   'pages/s/[studio]/benches/[bench]/wedges/[wedge].vue': { path: r => `/s/${r.slug}/benches/${r.bench}/wedges/${r.wedge}`, stands: 'h1' },
   'pages/s/[studio]/benches/[bench]/readings/[reading].vue': { path: r => `/s/${r.slug}/benches/${r.bench}/readings/${r.reading}`, stands: 'h1' },
   'pages/s/[studio]/shelf/index.vue': { path: r => `/s/${r.slug}/shelf`, stands: 'h1' },
+  'pages/s/[studio]/shelf/new.vue': { path: r => `/s/${r.slug}/shelf/new?kind=inkjets`, stands: 'form' },
+  'pages/s/[studio]/shelf/[drawer]/[item]/index.vue': { path: r => `/s/${r.slug}/shelf/sensitizers/${r.sensitizer}`, stands: 'dl' },
+  'pages/s/[studio]/shelf/[drawer]/[item]/change.vue': { path: r => `/s/${r.slug}/shelf/sensitizers/${r.sensitizer}/change`, stands: 'form' },
   'pages/s/[studio]/shelf/scanners/[scanner].vue': { path: r => `/s/${r.slug}/shelf/scanners/${r.scanner}`, stands: 'form' },
   'pages/new-password.vue': { path: () => '/new-password', stands: 'h1', isPublic: true },
   'pages/confirm-address.vue': { path: () => '/confirm-address', stands: 'h1', isPublic: true },
@@ -51,7 +54,8 @@ async function newRecords() {
   const wedge = (await agent.post(`${root}/benches/${bench.id}/wedges`, { page: { widthMm: 210, heightMm: 297 } })).body
   const reading = (await agent.post(`${root}/benches/${bench.id}/readings`, { unit: 'lightness', values: Array.from({ length: 21 }, (_, i) => ({ level: i / 20, value: 22 + 3.6 * i })) })).body
   const scanner = (await agent.post(`${root}/scanners`, { name: 'Flatbed by the window' })).body
-  return { agent, records: { slug: studio.slug, photo: photo.id, negative: negative.id, bench: bench.id, wedge: wedge.id, reading: reading.id, scanner: scanner.id } as Records }
+  const sensitizer = (await agent.post(`${root}/sensitizers`, { name: 'Two parts', facts: { process: 'cyanotype', parts: [{ name: 'A', madeOn: '2026-03-02', substances: [{ substance: 'Ferric ammonium citrate', amount: '25 g' }] }] } })).body
+  return { agent, records: { slug: studio.slug, photo: photo.id, negative: negative.id, bench: bench.id, wedge: wedge.id, reading: reading.id, scanner: scanner.id, sensitizer: sensitizer.id } as Records }
 }
 
 describe('accessibility', () => {

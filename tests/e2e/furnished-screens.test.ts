@@ -41,7 +41,8 @@ const screens: Record<string, Screen> = {
     await page.getByRole('button', { name: /^Top left/ }).focus()
     await page.locator('.loupe').waitFor()
   } },
-  'a thing on the shelf': { path: () => 'shelf', then: page => page.getByRole('button', { name: /^Change / }).first().click() },
+  'the shelf': { path: () => 'shelf', then: page => page.getByText('On one bench').waitFor() },
+  'a record of the shelf being changed, all of it open': { path: made => `shelf/papers/${made.paper}/change`, then: page => page.evaluate(() => document.querySelectorAll('details').forEach(folded => folded.open = true)) },
 }
 
 /** Derived: a print that falls evenly with exposure and then stays at its black. */
@@ -52,7 +53,7 @@ async function furnish() {
   const form = new FormData()
   form.append('file', new Blob([new Uint8Array(readFileSync(photograph(1200, 900)))], { type: 'image/jpeg' }), 'flower.jpg')
   const photo = (await agent.call('POST', `${root}/photos`, { body: form })).body.items[0]
-  const paper = (await agent.post(`${root}/papers`, { name: 'Cotton rag, smooth', notes: 'Lot of spring.' })).body
+  const paper = (await agent.post(`${root}/papers`, { name: 'Cotton rag, smooth', notes: 'Curls.', facts: { weightGramsPerM2: 300, surface: 'hot-pressed', white: { lightness: 96.4 }, sizes: [{ widthMm: 560, heightMm: 760 }], lots: [{ name: 'Spring', since: '2026-03-02' }] } })).body
   const bench = (await agent.post(`${root}/benches`, { name: 'Blue on cotton', process: 'cyanotype', paperId: paper.id, baseExposure: { value: 260, unit: 's' } })).body
   const values = Array.from({ length: 21 }, (_, i) => ({ level: i / 20, value: 22 + 73 * (i / 20) ** 1.3 }))
   const reading = (await agent.post(`${root}/benches/${bench.id}/readings`, { unit: 'lightness', values })).body
@@ -73,7 +74,7 @@ async function furnish() {
   await agent.post(`${root}/scanner-profiles/${scanner.id}`, { process: 'cyanotype', kind: 'grey-scale', points: Array.from({ length: 9 }, (_, i) => ({ scanned: 20 + 9 * i, measured: 15 + 9.6 * i })) })
   const starter = (await agent.post(`${root}/starter-benches`, { process: 'cyanotype' })).body
   await agent.post(`${root}/negatives`, { photoId: photo.id, benchId: bench.id, size: { widthMm: 100, heightMm: 100 } })
-  return { agent, slug: studio.slug as string, photo: photo.id as string, bench: bench.id as string, wedge: wedge.id as string, scan: scan.id as string, second: second.id as string, scanner: scanner.id as string, starter: starter.id as string }
+  return { agent, slug: studio.slug as string, photo: photo.id as string, bench: bench.id as string, paper: paper.id as string, wedge: wedge.id as string, scan: scan.id as string, second: second.id as string, scanner: scanner.id as string, starter: starter.id as string }
 }
 
 /** Counts the pixels of the screen that hold blue light. */

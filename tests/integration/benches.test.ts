@@ -10,21 +10,6 @@ type Studio = Awaited<ReturnType<typeof newStudio>>
 const newBench = async ({ agent, root }: Studio, fields = {}) => (await agent.post(`${root}/benches`, { ...cyanotype, ...fields })).body
 const newReading = async ({ agent, root }: Studio, bench: string) => (await agent.post(`${root}/benches/${bench}/readings`, { unit: 'lightness', values: wedgeValues })).body
 
-describe('the shelf', () => {
-  it('lists newest first, page by page, without what was taken off', async () => {
-    const { agent, root } = await newStudio()
-    const names = ['One', 'Two', 'Three', 'Four', 'Five']
-    for (const name of names) await agent.post(`${root}/papers`, { name })
-    const first = (await agent.get(`${root}/papers?limit=3`)).body
-    const second = (await agent.get(`${root}/papers?limit=3&cursor=${first.nextCursor}`)).body
-    expect([...first.items, ...second.items].map((p: { name: string }) => p.name)).toEqual([...names].reverse())
-    expect(second.nextCursor).toBeNull()
-    await agent.post(`${root}/papers/${first.items[0].id}/archive`, { revision: 1 })
-    expect((await agent.get(`${root}/papers`)).body.items).toHaveLength(4)
-    expect((await agent.get(`${root}/papers?archived=true`)).body.items).toMatchObject([{ name: 'Five', revision: 2 }])
-  })
-})
-
 describe('a bench', () => {
   it('has a mirrored film, black ink and lightness unless told otherwise; carbon turns the picture itself', async () => {
     const studio = await newStudio()
@@ -46,7 +31,9 @@ describe('a bench', () => {
     const { id } = await newBench(studio)
     const lamp = (await agent.post(`${root}/lamps`, { name: 'Eight tubes' })).body.id
     expect((await agent.patch(`${root}/benches/${id}`, { lampId: lamp, revision: 1 })).body).toMatchObject({ lampId: lamp, revision: 2 })
+    expect((await agent.get(`${root}/benches/${id}`)).body.combinationFixed).toBe(false)
     await newReading(studio, id)
+    expect((await agent.get(`${root}/benches/${id}`)).body.combinationFixed).toBe(true)
 
     const refused = await agent.patch(`${root}/benches/${id}`, { lampId: null, ink: { color: '#000000' }, revision: 2 })
     expect(refused.body).toMatchObject({ statusCode: 409, data: { code: 'combination_fixed', issues: [{ path: 'lampId' }] } })
@@ -58,6 +45,19 @@ describe('a bench', () => {
     expect(copy).toMatchObject({ name: 'North window, copy', process: 'cyanotype', lampId: null, curveInUse: null })
     expect((await agent.get(`${root}/benches/${copy.id}/readings`)).body.items).toEqual([])
     expect((await agent.get(`${root}/benches/${id}/readings`)).body.items).toHaveLength(1)
+  })
+
+  it('stays as it is from its first wedge print on, also where nothing was read yet', async () => {
+    const studio = await newStudio()
+    const { agent, root } = studio
+    const { id } = await newBench(studio)
+    const wedge = (await agent.post(`${root}/benches/${id}/wedges`, { page: { widthMm: 210, heightMm: 297 } })).body
+    expect((await agent.get(`${root}/benches/${id}`)).body.combinationFixed).toBe(false)
+    await agent.post(`${root}/wedges/${wedge.id}/prints`, {})
+    expect((await agent.get(`${root}/benches/${id}`)).body.combinationFixed).toBe(true)
+    const refused = await agent.patch(`${root}/benches/${id}`, { recipe: { coats: 2 }, revision: 1 })
+    expect(refused.body).toMatchObject({ statusCode: 409, data: { code: 'combination_fixed', issues: [{ path: 'recipe' }] } })
+    expect(refused.body.message).toContain('wedge prints or readings')
   })
 
   it('keeps its base exposures as dated entries, the newest of which counts, also after readings', async () => {
