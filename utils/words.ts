@@ -1,6 +1,7 @@
 import type { Process } from '#shared/schemas/benches'
 import type { Aim } from '#shared/schemas/curves'
 import type { FilmFormat } from '#shared/schemas/negatives'
+import type { PictureNote } from '#shared/schemas/picture-formats'
 
 /** How the screens say the contract's words. Records, so that a new word cannot be forgotten. */
 export const processNames: Record<Process, string> = {
@@ -21,6 +22,14 @@ export const aimSays: Record<Aim, string> = {
   'even-lightness': 'Every step of the photo gives an equal step in the print. Prints come out lighter than the photo in the middle.',
   'keep-middle-tones': 'The middle stays where it is in the photo; the ends give way.',
   'even-density': 'Equal steps of density. Middle and light tones come out a little darker than with even lightness.',
+}
+
+/** What is left out of a photo that holds more than one still picture can show. */
+export const noteSays: Record<PictureNote, string> = {
+  gain_map: 'The brightness map for HDR screens; the picture beneath it is used',
+  several_pictures: 'All pictures of the file but the first',
+  motion: 'The film that belongs to it; the still picture is used',
+  animation: 'All frames but the first',
 }
 
 export const formatNames: Record<FilmFormat, string> = { pdf: 'PDF', tiff: 'TIFF', png: 'PNG' }

@@ -11,7 +11,7 @@ import { main, run, say } from './run.mjs'
 // `npm test`: whatever is missing, then lint, typecheck and all tests; the last line counts them.
 
 /** Programs that are not ours and read our files back, real photographs, profiles, a browser. */
-const debianPackages = ['chromium', 'fonts-dejavu-core', 'icc-profiles-free', 'imagemagick', 'libheif-examples', 'libjxl-testdata', 'libvips-tools', 'poppler-utils', 'zbar-tools']
+const debianPackages = ['chromium', 'fonts-dejavu-core', 'gdk-pixbuf-tests', 'golang-1.19-src', 'golang-golang-x-image-dev', 'icc-profiles-free', 'imagemagick', 'libheif-examples', 'libjxl-testdata', 'libvips-tools', 'poppler-utils', 'zbar-tools']
 const projects = ['unit', 'component', 'integration', 'e2e']
 const results = inData('test-results')
 const bin = name => join(root, 'node_modules/.bin', name)

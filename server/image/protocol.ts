@@ -14,18 +14,24 @@ import type { ReadingChannel } from '#shared/schemas/benches'
 import type { Aim } from '#shared/schemas/curves'
 import type { PaletteKind } from '#shared/tone/palettes'
 import type { Adjustments, FilmFormat } from '#shared/schemas/negatives'
-import type { PictureFormat, PictureHeader } from './header/header'
+import type { PictureFormat, PictureNote } from '#shared/schemas/picture-formats'
+import type { PictureHeader } from './header/header'
 
 /** What stands in a picture file's header, read before anything is decoded. */
 export interface PictureFacts {
-  format: 'jpeg' | 'png'
+  format: PictureFormat
   /** pixels of the upright picture */
   width: number
   height: number
   orientation: number
   bitDepth: 8 | 16
   colourProfile: string
+  /** what else the file holds and is left out */
+  notes: PictureNote[]
 }
+
+/** A picture's file, and where its decoded codes may be kept between calls if decoding is slow. */
+export interface PictureSource { path: string, working?: string }
 
 /** Which part of the upright picture is shown, and how it is turned; api.md's coordinates. */
 export interface Geometry {
@@ -98,19 +104,19 @@ type WithoutPage<T> = T extends { page: unknown } ? Omit<T, 'page'> : T
 /** Calls to an image child; paths are absolute. Each answers or fails with a ComputeError's code. */
 export interface ImageCalls {
   /** header, budget, and one reading of all the data: what is cut off or broken is refused here */
-  probe: { in: { path: string }, out: PictureFacts }
+  probe: { in: PictureSource, out: PictureFacts }
   /** upright black-and-white JPEG, `longerSide` pixels at most */
-  thumbnail: { in: { path: string, target: string, longerSide: number }, out: { width: number, height: number } }
+  thumbnail: { in: PictureSource & { target: string, longerSide: number }, out: { width: number, height: number } }
   /** interleaved 16-bit little-endian working-space channels, exactly width × height pixels */
-  proxy: { in: { path: string, target: string, geometry: Geometry, width: number, height: number }, out: { width: number, height: number } }
+  proxy: { in: PictureSource & { target: string, geometry: Geometry, width: number, height: number }, out: { width: number, height: number } }
   /** writes the film file; progress 0…1 comes in between */
-  film: { in: { path: string, target: string, order: FilmOrder, renderKey: string }, out: { bytes: number, sha256: string } }
+  film: { in: PictureSource & { target: string, order: FilmOrder, renderKey: string }, out: { bytes: number, sha256: string } }
   /** the same for a wedge, which is laid out from its record */
   wedgeFilm: { in: { target: string, order: WedgeFilmOrder, renderKey: string }, out: { bytes: number, sha256: string } }
   /** a wedge's sheet as its print may read, as an 8-bit PNG */
   wedgePreview: { in: { target: string, order: WedgeFilmOrder, width: number, palette: string }, out: { width: number, height: number } }
   /** one state of the triptych as an 8-bit PNG, through the same code as film */
-  forecast: { in: { path: string, target: string, order: FilmOrder, width: number, state: 'photo' | 'film' | 'print', palette: PaletteKind }, out: { width: number, height: number } }
+  forecast: { in: PictureSource & { target: string, order: FilmOrder, width: number, state: 'photo' | 'film' | 'print', palette: PaletteKind }, out: { width: number, height: number } }
   /** `fitCurve` of shared/calibration: too long for the process that answers requests */
   fitCurve: { in: { readings: CurveReading[], channel: ReadingChannel }, out: CurveFit }
   /** decodes a scan and looks for its code; the picture is kept for the `readScan` that follows */
@@ -118,7 +124,7 @@ export interface ImageCalls {
   /** every patch of the wedge whose page and levels are given */
   readScan: { in: { path: string, page: WedgePage, levels: number[] | null, corners?: Corners, quality?: ReadingQuality, paperLightness?: number }, out: WithoutPage<ScanReport> }
   /** upright JPEG of a scan; `cells` are corners of the patches' read parts in its full pixels, x and y in turn */
-  scanPicture: { in: { path: string, target: string, width: number, cells?: number[][] }, out: { width: number, height: number } }
+  scanPicture: { in: PictureSource & { target: string, width: number, cells?: number[][] }, out: { width: number, height: number } }
   /** the calculations of shared/calibration that take a tenth of a second and more */
   findBaseExposure: { in: { values: ExposureValue[], goal: ExposureGoal }, out: BaseExposure }
   splitFilm: { in: { wedge: BandedResponse, steps: TabletStep[] }, out: FilmDensity[] }

@@ -3,6 +3,7 @@ import { renders } from '../db/schema'
 import type { CallOptions } from '../image/pool'
 import { filmChild } from '../services/image-child'
 import { hintRender, type RenderRow } from '../services/renders'
+import { photoSource } from '../services/photo-pictures'
 import { storage } from '../services/storage'
 import { storageKeys } from '../storage'
 import type { LeasedWork } from './leased-work'
@@ -34,5 +35,5 @@ export const filmWork: LeasedWork<typeof renders> = {
 function callFor({ studioId, photoId, renderKey, order }: RenderRow, target: string, options: CallOptions) {
   if (!('geometry' in order)) return filmChild().call('wedgeFilm', { target, order, renderKey }, options)
   if (photoId === null) throw new ComputeError('unavailable', 'This film has no photo to be made of.')
-  return filmChild().call('film', { path: storage().pathOf(storageKeys.original(studioId, photoId)), target, order, renderKey }, options)
+  return filmChild().call('film', { ...photoSource({ studioId, id: photoId }), target, order, renderKey }, options)
 }

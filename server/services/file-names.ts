@@ -1,9 +1,10 @@
 import type { FilmFormat } from '#shared/schemas/negatives'
 import { limits } from '#shared/schemas/limits'
+import { pictureEndings } from '#shared/schemas/picture-formats'
 import type { NegativeParts } from './negative-parts'
 import type { WedgeParts } from './wedge-parts'
 
-const pictureEnding = /\.(?:jpe?g|jfif|png|tiff?|webp|avif|hei[cf])$/i
+const pictureEnding = new RegExp(`\\.(?:${Object.values(pictureEndings).flat().join('|')})$`, 'i')
 // Control characters, and those that turn or hide what follows them.
 const hidden = /[\p{Cc}\p{Cf}\p{Zl}\p{Zp}\p{Co}\p{Cn}]/gu
 

@@ -5,7 +5,7 @@ import { canonicalJson } from './creation'
 import { filmOrder } from './film-order'
 import { imageChild } from './image-child'
 import type { NegativeParts } from './negative-parts'
-import { cachedPicture, originalPath, type CachedPicture } from './photo-pictures'
+import { cachedPicture, photoSource, type CachedPicture } from './photo-pictures'
 
 /** One state of the triptych as a picture, made by the same code as the film. */
 export function forecastOf(parts: NegativeParts, { width, state }: { width: number, state: 'photo' | 'film' | 'print' }): Promise<CachedPicture> {
@@ -14,5 +14,5 @@ export function forecastOf(parts: NegativeParts, { width, state }: { width: numb
   const palette = state === 'print' ? curve.colourPath ?? bench.process : state
   const asked = createHash('sha256').update(canonicalJson({ engine: engineVersion, order, width, state, palette })).digest('hex')
   return cachedPicture(storageKeys.picture(photo.studioId, photo.id, asked), target =>
-    imageChild().call('forecast', { path: originalPath(photo), target, order, width, state, palette }))
+    imageChild().call('forecast', { ...photoSource(photo), target, order, width, state, palette }))
 }

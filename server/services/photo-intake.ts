@@ -1,3 +1,4 @@
+import { stat } from 'node:fs/promises'
 import { and, eq } from 'drizzle-orm'
 import { v7 as uuidv7 } from 'uuid'
 import type { z } from 'zod'
@@ -54,25 +55,25 @@ async function takePhoto(studio: StudioAccess, arrival: WholeArrival): Promise<{
   const known = await sameBytes(db(), studio, arrival.sha256)
   if (known) return { photo: await db().transaction(tx => bringBack(tx, known)), isNew: false }
 
-  const { path } = arrival.file
-  const facts = await imageChild().call('probe', { path })
-  const thumbnail = await storage().temporary('thumbnail')
+  const thumbnail = await storage().temporary('thumbnail'), working = await storage().temporary('working')
   try {
+    const source = { path: arrival.file.path, working: working.path }
+    const facts = await imageChild().call('probe', source)
     // Made now, because it reads the picture to its end: a truncated one is found out before it is stored.
-    await imageChild().call('thumbnail', { path, target: thumbnail.path, longerSide: thumbnailLongerSidePixels })
-    return await db().transaction(tx => store(tx, studio, arrival, facts, thumbnail))
+    await imageChild().call('thumbnail', { ...source, target: thumbnail.path, longerSide: thumbnailLongerSidePixels })
+    return await db().transaction(tx => store(tx, studio, arrival, facts, { thumbnail, working }))
   }
   catch (error) {
     if (!(error instanceof ComputeError)) arrival.file.abandon()
     throw error
   }
   finally {
-    await thumbnail.discard()
+    await Promise.all([thumbnail.discard(), working.discard()])
   }
 }
 
 /** Files first, row last. The row's lock on the studio keeps its limit, and equal uploads, one after the other. */
-async function store(tx: Transaction, studio: StudioAccess, arrival: WholeArrival, facts: PictureFacts, thumbnail: TemporaryFile) {
+async function store(tx: Transaction, studio: StudioAccess, arrival: WholeArrival, facts: PictureFacts, made: { thumbnail: TemporaryFile, working: TemporaryFile }) {
   await requireRoom(tx, studio.id, arrival.bytes)
   const known = await sameBytes(tx, studio, arrival.sha256)
   if (known) return { photo: await bringBack(tx, known), isNew: false }
@@ -80,11 +81,13 @@ async function store(tx: Transaction, studio: StudioAccess, arrival: WholeArriva
   const [row] = await tx.insert(photos).values({
     studioId: studio.id, id: arrival.id, uploaderId: studio.personId, name: nameFromFileName(arrival.fileName),
     format: facts.format, bytes: arrival.bytes, sha256: arrival.sha256,
-    width: facts.width, height: facts.height, orientation: facts.orientation, colourProfile: facts.colourProfile.slice(0, 120),
+    width: facts.width, height: facts.height, orientation: facts.orientation, colourProfile: facts.colourProfile.slice(0, 120), notes: facts.notes,
   }).returning()
   await recordEvent(tx, { studioId: studio.id, userId: studio.personId, kind: 'photo.uploaded', recordId: arrival.id, details: { bytes: arrival.bytes } })
   await hint(tx, { studioId: studio.id, topic: 'photos', id: arrival.id, onlyFor: studio.personId })
-  await thumbnail.keep(storageKeys.thumbnail(studio.id, arrival.id))
+  await made.thumbnail.keep(storageKeys.thumbnail(studio.id, arrival.id))
+  // Empty where the picture is quick to decode.
+  if ((await stat(made.working.path)).size > 0) await made.working.keep(storageKeys.working(studio.id, arrival.id))
   await arrival.file.keepBeside(storageKeys.original(studio.id, arrival.id))
   return { photo: showPhoto(row!), isNew: true }
 }

@@ -3,7 +3,7 @@ import { utimes } from 'node:fs/promises'
 import type { z } from 'zod'
 import type { proxyQuery } from '#shared/schemas/photos'
 import { straightenedFrame } from '#shared/sheet/crop'
-import type { Geometry } from '../image/protocol'
+import type { Geometry, PictureSource } from '../image/protocol'
 import { engineVersion } from '../image/version'
 import { storageKeys } from '../storage'
 import { thumbnailLongerSidePixels } from './photo-intake'
@@ -48,11 +48,13 @@ async function makePicture(key: string, make: (target: string) => Promise<unknow
   }
 }
 
-export const originalPath = (photo: { studioId: string, id: string }): string => storage().pathOf(storageKeys.original(photo.studioId, photo.id))
+/** A photo's file for the image child, and where its decoded codes may be kept. */
+export const photoSource = ({ studioId, id }: { studioId: string, id: string }): PictureSource =>
+  ({ path: storage().pathOf(storageKeys.original(studioId, id)), working: storage().pathOf(storageKeys.working(studioId, id)) })
 
 export function thumbnailOf(photo: PhotoRow): Promise<CachedPicture> {
   return cachedPicture(storageKeys.thumbnail(photo.studioId, photo.id), target =>
-    imageChild().call('thumbnail', { path: originalPath(photo), target, longerSide: thumbnailLongerSidePixels }))
+    imageChild().call('thumbnail', { ...photoSource(photo), target, longerSide: thumbnailLongerSidePixels }))
 }
 
 /** The preview's starting point: working-space channels of the photo, or of a region of it when zoomed in. */
@@ -64,6 +66,6 @@ export async function proxyOf(photo: PhotoRow, query: z.infer<typeof proxyQuery>
   const height = query.height ?? Math.min(2400, Math.max(1, Math.round(width * (cropHeight * frame.height) / (cropWidth * frame.width))))
   const asked = createHash('sha256').update(JSON.stringify([engineVersion, geometry, width, height])).digest('hex')
   const picture = await cachedPicture(storageKeys.picture(photo.studioId, photo.id, asked), target =>
-    imageChild().call('proxy', { path: originalPath(photo), target, geometry, width, height }))
+    imageChild().call('proxy', { ...photoSource(photo), target, geometry, width, height }))
   return { ...picture, width, height }
 }

@@ -22,5 +22,5 @@ export function scanPicture(row: ReadingRow, { width, cells }: { width: number, 
   const drawn = cells ? row.evidence?.cells : undefined
   const asked = createHash('sha256').update(JSON.stringify([engineVersion, row.fileSha256, width, drawn])).digest('hex')
   return cachedPicture(storageKeys.picture(row.studioId, row.id, asked), target =>
-    imageChild().call('scanPicture', { path: storage().pathOf(storageKeys.scan(row.studioId, row.id)), target, width, cells: drawn }))
+    imageChild().call('scanPicture', { path: storage().pathOf(storageKeys.scan(row.studioId, row.id)), working: storage().pathOf(storageKeys.working(row.studioId, row.id)), target, width, cells: drawn }))
 }

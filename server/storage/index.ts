@@ -109,5 +109,7 @@ export const storageKeys = {
   thumbnail: (studioId: string, photoId: string) => `cache/${studioId}/${photoId}/thumbnail.jpg`,
   /** a proxy's, forecast's, wedge preview's or shown scan's bytes, by the hash of what was asked */
   picture: (studioId: string, recordId: string, hash: string) => `cache/${studioId}/${recordId}/${hash}`,
+  /** the decoded codes of a picture that is slow to decode */
+  working: (studioId: string, recordId: string) => `cache/${studioId}/${recordId}/working`,
   film: (studioId: string, renderKey: string, format: string) => `films/${studioId}/${renderKey}.${format}`,
 }

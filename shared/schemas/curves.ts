@@ -1,5 +1,6 @@
 import { z } from 'zod'
 import { endpoint } from './endpoint'
+import { pictureFormats } from './picture-formats'
 import { fraction, id, instant, listOf, listQuery, newId, revision, text } from './primitives'
 
 export const aims = ['even-lightness', 'keep-middle-tones', 'even-density'] as const
@@ -56,7 +57,7 @@ export const reading = z.object({
   progress: fraction, error: warning.nullable(),
   evidence: readingEvidence.nullable(),
   /** the scan’s file; sides are the upright picture’s, known once it was looked into */
-  file: z.object({ name: z.string(), bytes: z.number().int(), format: z.enum(['jpeg', 'png', 'tiff', 'heic']).nullable(), width: z.number().int().nullable(), height: z.number().int().nullable() }).nullable(),
+  file: z.object({ name: z.string(), bytes: z.number().int(), format: z.enum(pictureFormats).nullable(), width: z.number().int().nullable(), height: z.number().int().nullable() }).nullable(),
 })
 export type Reading = z.infer<typeof reading>
 

@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import { reading } from './curves'
 import { endpoint, streamed } from './endpoint'
+import { pictureFormatNames, pictureMediaTypes } from './picture-formats'
 import { id } from './primitives'
 
 const pixel = z.number().min(-100_000).max(100_000)
@@ -39,9 +40,8 @@ export const readAgainBody = z.strictObject({
 export type ReadAgain = z.infer<typeof readAgainBody>
 
 export const scanMedia = {
-  'multipart/form-data': 'The picture as `scan` (JPEG, PNG, TIFF or HEIC); fields `corners` (JSON), `printNumber`, `scannerId`, `quality` (scan or phone), `paperLightness`, `id`.',
+  'multipart/form-data': `The picture as \`scan\` (${Object.values(pictureFormatNames).join(', ')}); fields \`corners\` (JSON), \`printNumber\`, \`scannerId\`, \`quality\` (scan or phone), \`paperLightness\`, \`id\`.`,
 } as const
-const scanTypes = ['image/jpeg', 'image/png', 'image/tiff', 'image/heic'] as const
 const root = '/api/studios/:studio/readings/:reading' as const
 export const scanEndpoints = {
   createWedgeReading: endpoint({
@@ -55,6 +55,6 @@ export const scanEndpoints = {
     query: z.strictObject({ width: z.coerce.number().int().min(64).max(4000).default(1200), cells: z.stringbool().default(false) }),
     answers: { 200: ['image/jpeg'], ...streamed(['image/jpeg']) },
   }),
-  readingFile: endpoint({ method: 'GET', path: `${root}/file`, access: 'technician', summary: 'The scan as it was handed in.', answers: { 200: scanTypes, ...streamed(scanTypes) } }),
+  readingFile: endpoint({ method: 'GET', path: `${root}/file`, access: 'technician', summary: 'The scan as it was handed in.', answers: { 200: pictureMediaTypes, ...streamed(pictureMediaTypes) } }),
   deleteReading: endpoint({ method: 'DELETE', path: root, access: 'technician', summary: 'Remove a reading that nothing rests on, with its scan.', answers: { 204: null } }),
 }

@@ -6,6 +6,7 @@ import type { FilmOrder, WedgeFilmOrder } from '../../image/protocol'
 import { limits } from '../../../shared/schemas/limits'
 import type { crop, margin, marks, Adjustments } from '../../../shared/schemas/negatives'
 import { filmFormats } from '../../../shared/schemas/negatives'
+import { pictureFormats, type PictureNote } from '../../../shared/schemas/picture-formats'
 import { benches } from './benches'
 import { createdAt, instant, revision, studioId } from './columns'
 import { curves } from './curves'
@@ -17,7 +18,7 @@ export const photos = pgTable('photos', {
   id: uuid().notNull(),
   uploaderId: uuid().notNull().references(() => users.id),
   name: varchar({ length: limits.nameLength }).notNull(),
-  format: varchar({ length: 10, enum: ['jpeg', 'png'] }).notNull(),
+  format: varchar({ length: 10, enum: pictureFormats }).notNull(),
   bytes: bigint({ mode: 'number' }).notNull(),
   sha256: varchar({ length: 64 }).notNull(),
   /** pixels of the upright picture */
@@ -25,6 +26,8 @@ export const photos = pgTable('photos', {
   height: integer().notNull(),
   orientation: integer().notNull(),
   colourProfile: varchar({ length: 120 }).notNull(),
+  /** what else the file holds and is left out */
+  notes: jsonb().$type<PictureNote[]>().notNull().default([]),
   binnedAt: instant(),
   createdAt: createdAt(),
   revision: revision(),

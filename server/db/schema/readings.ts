@@ -3,6 +3,7 @@ import { bigint, foreignKey, index, integer, jsonb, pgTable, primaryKey, real, t
 import type { ReadingEvidence, Warning } from '../../../shared/schemas/curves'
 import { workStates } from '../../../shared/schemas/curves'
 import { limits } from '../../../shared/schemas/limits'
+import { pictureFormats } from '../../../shared/schemas/picture-formats'
 import { benches } from './benches'
 import { createdAt, instant, studioId } from './columns'
 import { curves } from './curves'
@@ -42,7 +43,7 @@ export const readings = pgTable('readings', {
   fileName: varchar({ length: limits.nameLength }),
   fileBytes: bigint({ mode: 'number' }),
   fileSha256: varchar({ length: 64 }),
-  fileFormat: varchar({ length: 8, enum: ['jpeg', 'png', 'tiff', 'heic'] }),
+  fileFormat: varchar({ length: 8, enum: pictureFormats }),
   /** pixels of the upright picture */
   fileWidth: integer(),
   fileHeight: integer(),

@@ -1,8 +1,9 @@
-import { adaptation, d50, xyzFromSrgb, xyzMatrix } from '#shared/tone/colour-spaces'
+import { d50, xyzFromSrgb } from '#shared/tone/colour-spaces'
 import { type Matrix3, multiply, transform, type Vector3 } from '#shared/tone/matrix'
 import { srgbToLinear } from '#shared/tone/srgb'
 import { workingFromXyz } from '#shared/tone/working-space'
-import type { Profile, ToneCurve } from './icc-profile'
+import type { ToneCurve } from './icc-curve'
+import type { Profile } from './icc-profile'
 
 /**
  * How a picture's stored codes become linear light of the working space: one curve a stored channel, then a matrix.
@@ -30,14 +31,7 @@ function withExactWhite(xyzFromDevice: Matrix3): Matrix3 {
 export const srgbLight: WorkingLight = { curves: [srgbToLinear, srgbToLinear, srgbToLinear], matrix: multiply(workingFromXyz, xyzFromSrgb) }
 export const srgbGreyLight: WorkingLight = { curves: [srgbToLinear], matrix: [[1], [1], [1]] }
 
-const d65: Vector3 = [0.3127 / 0.329, 1, (1 - 0.3127 - 0.329) / 0.329]
-/** Display P3: primaries of SMPTE EG 432-1, white D65, the sRGB curve. What the library converts other profiles to. */
-export const displayP3Light: WorkingLight = {
-  curves: srgbLight.curves,
-  matrix: multiply(workingFromXyz, multiply(adaptation(d65, d50), xyzMatrix([[0.68, 0.32], [0.265, 0.69], [0.15, 0.06]], d65))),
-}
-
-export function workingLightOf(profile: Exclude<Profile, { kind: 'other' }>): WorkingLight {
+export function workingLightOf(profile: Extract<Profile, { kind: 'rgb' | 'grey' }>): WorkingLight {
   if (profile.kind === 'grey') return { curves: [profile.curve], matrix: [[1], [1], [1]] }
   return { curves: profile.curves, matrix: multiply(workingFromXyz, withExactWhite(fromColumns(profile.columns))) }
 }

@@ -1,3 +1,4 @@
+import type { PictureNote } from '#shared/schemas/picture-formats'
 import { type ExifFacts, readExif } from './exif'
 import type { FileWindow } from './file-window'
 import { metadataMaxBytes, type PictureHeader, profileMaxBytes, unreadable } from './header'
@@ -39,10 +40,27 @@ class ProfilePieces {
   }
 }
 
+/**
+ * Application segments that tell of more than the one picture: a gain map (ISO 21496-1 or its forerunners' XMP), a film after it,
+ * or further pictures (CIPA DC-007, Multi-Picture Format). Only the first picture is ever decoded.
+ */
+function noteOf(marker: number, body: Buffer): PictureNote | undefined {
+  const start = body.toString('latin1', 0, 28)
+  if (marker === app2) return start.startsWith('urn:iso:std:iso:ts:21496:-1') ? 'gain_map' : start.startsWith('MPF\0') ? 'several_pictures' : undefined
+  if (!start.startsWith('http://ns.adobe.com/xap/1.0/')) return undefined
+  const xmp = body.toString('latin1')
+  if (/hdrgm:Version|HDRGainMap/.test(xmp)) return 'gain_map'
+  return /(?:MotionPhoto|MicroVideo)="1"/.test(xmp) ? 'motion' : undefined
+}
+
+/** The second picture of one with a gain map is that map. */
+const withoutRepeats = (notes: Set<PictureNote>): PictureNote[] => [...notes].filter(note => note !== 'several_pictures' || !notes.has('gain_map'))
+
 /** Walks the segments up to the first scan; long ones are stepped over, never loaded. */
 export async function readJpegHeader(window: FileWindow): Promise<PictureHeader> {
   const profile = new ProfilePieces()
   let exif: ExifFacts = { orientation: 1, device: null }
+  const notes = new Set<PictureNote>()
   let frame: Frame | undefined
   for (let offset = 2; ;) {
     const head = await window.bytes(offset, 4)
@@ -56,14 +74,16 @@ export async function readJpegHeader(window: FileWindow): Promise<PictureHeader>
     const length = head.readUInt16BE(2)
     if (length < 2) throw unreadable('its header makes no sense')
     if (isFrame(marker)) frame = readFrame(marker, await window.bytes(offset + 4, length - 2))
-    if (marker === app2) profile.add(await window.bytes(offset + 4, length - 2))
-    if (marker === app1) {
+    if (marker === app1 || marker === app2) {
       const body = await window.bytes(offset + 4, length - 2)
-      if (body.toString('latin1', 0, 6) === 'Exif\0\0') exif = readExif(body.subarray(6))
+      if (marker === app2) profile.add(body)
+      else if (body.toString('latin1', 0, 6) === 'Exif\0\0') exif = readExif(body.subarray(6))
+      const note = noteOf(marker, body)
+      if (note) notes.add(note)
     }
     offset += 2 + length
     if (offset > metadataMaxBytes) throw unreadable('there is too much beside the picture in it')
   }
   if (!frame) throw unreadable('its header makes no sense')
-  return { format: 'jpeg', bitDepth: 8, alpha: false, ...exif, icc: profile.whole(), ...frame }
+  return { format: 'jpeg', bitDepth: 8, alpha: false, ...exif, icc: profile.whole(), notes: withoutRepeats(notes), ...frame }
 }

@@ -1,4 +1,4 @@
-import type { LightPlane } from '../decode'
+import type { LightPlane } from '../light-plane'
 import type { Affine, Placement } from './placement'
 import { cubic } from './taps'
 import { encodeTones } from './tone-code'

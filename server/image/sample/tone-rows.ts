@@ -1,4 +1,4 @@
-import type { LightPlane } from '../decode'
+import type { LightPlane } from '../light-plane'
 import { rotatedRows } from './rotated'
 import type { Placement, Rectangle } from './placement'
 import { applyTaps, averagingTaps, interpolatingTaps } from './taps'

@@ -1,3 +1,5 @@
+import type { Codes } from '../decode/codes'
+
 /**
  * One of the eight ways a picture can lie: a signed permutation that takes a direction in the turned picture to the
  * direction in the stored one, `[x, y] stored = [[a, b], [c, d]] · [x, y] turned`, y down.
@@ -49,4 +51,22 @@ export function turnPlane(stored: Uint16Array, width: number, height: number, tu
     }
   }
   return turned
+}
+
+/** An interleaved picture, turned; the same one where nothing is to be done. */
+export function turnCodes(picture: Codes, turn: Turn): Codes {
+  if (isUnturned(turn)) return picture
+  const { width, height, channels, codes } = picture
+  const [a, b, c, d] = turn
+  const sides = turnedSides(turn, width, height)
+  const stepX = channels * (a + c * width), stepY = channels * (b + d * width)
+  const start = channels * ((a + b < 0 ? width - 1 : 0) + (c + d < 0 ? (height - 1) * width : 0))
+  const turned = new (codes instanceof Uint16Array ? Uint16Array : Uint8Array)(codes.length)
+  let to = 0
+  for (let y = 0; y < sides.height; y++) {
+    for (let x = 0, from = start + y * stepY; x < sides.width; x++, from += stepX) {
+      for (let channel = 0; channel < channels; channel++) turned[to++] = codes[from + channel]!
+    }
+  }
+  return { ...sides, channels, codes: turned }
 }

@@ -1,7 +1,7 @@
 import { grey8, type PictureColour } from '#shared/calibration/reading/picture'
 import { type Matrix3, multiply } from '#shared/tone/matrix'
 import { codeFromLinear, linearTable, xyzFromWorking } from '#shared/tone/working-space'
-import type { ToneCurve } from '../colour/icc-profile'
+import type { ToneCurve } from '../colour/icc-curve'
 import type { WorkingLight } from '../colour/working-light'
 
 /** Curves that differ by less than this everywhere are one curve. */

@@ -1,10 +1,11 @@
 import { mixWeights } from '#shared/tone/mix'
-import { decodePicture, lightPlane, type LightPlane } from '../decode'
+import { decodePicture } from '../decode/decode'
 import { composeFilm, filmInk } from '../film/compose'
 import { layOutFilm } from '../film/layout'
 import { layOutMarks } from '../film/marks'
 import { writeFilm } from '../film/write-film'
-import type { FilmOrder, ImageCalls } from '../protocol'
+import { lightPlane, type LightPlane } from '../light-plane'
+import type { FilmOrder, ImageCalls, PictureSource } from '../protocol'
 import { placePixels } from '../sample/placement'
 import { toneRows } from '../sample/tone-rows'
 
@@ -12,14 +13,14 @@ import { toneRows } from '../sample/tone-rows'
 const decodingShare = 0.25
 
 /** Decodes and keeps only what the film needs. */
-async function openSource(path: string, order: FilmOrder): Promise<{ plane: LightPlane, orientation: number }> {
-  const picture = await decodePicture(path)
+async function openSource(source: PictureSource, order: FilmOrder): Promise<{ plane: LightPlane, orientation: number }> {
+  const picture = await decodePicture(source)
   return { plane: lightPlane(picture, mixWeights(order.tone.adjustments.mix)), orientation: picture.header.orientation }
 }
 
-export async function makeFilm({ path, target, order, renderKey }: ImageCalls['film']['in'], onProgress: (fraction: number) => void): Promise<ImageCalls['film']['out']> {
+export async function makeFilm({ path, working, target, order, renderKey }: ImageCalls['film']['in'], onProgress: (fraction: number) => void): Promise<ImageCalls['film']['out']> {
   const ink = filmInk(order)
-  const { plane, orientation } = await openSource(path, order)
+  const { plane, orientation } = await openSource({ path, working }, order)
   onProgress(decodingShare)
   const source = { width: plane.width, height: plane.height, orientation }
   const layout = layOutFilm(source, order)

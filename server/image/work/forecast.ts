@@ -2,7 +2,7 @@ import sharp from 'sharp'
 import { mixToTonePlane, mixWeights } from '#shared/tone/mix'
 import { lightTableLightness, lookColour, type PaletteKind } from '#shared/tone/palettes'
 import { stateLook, statePixels, type TriptychState } from '#shared/tone/triptych'
-import { decodePicture } from '../decode'
+import { decodePicture } from '../decode/decode'
 import { placePicture } from '../film/layout'
 import type { FilmOrder, ImageCalls } from '../protocol'
 import { partSides } from '../sample/placement'
@@ -17,8 +17,8 @@ function fillPixel(state: TriptychState, { margin, tone }: FilmOrder, printLook:
 }
 
 /** The page's preview of the same pixels, made by the same functions: channels first, then mix and table pixel by pixel. */
-export async function makeForecast({ path, target, order, width, state, palette }: ImageCalls['forecast']['in']): Promise<ImageCalls['forecast']['out']> {
-  const picture = await decodePicture(path)
+export async function makeForecast({ target, order, width, state, palette, ...source }: ImageCalls['forecast']['in']): Promise<ImageCalls['forecast']['out']> {
+  const picture = await decodePicture(source)
   const height = Math.max(1, Math.round(width * order.picture.heightPixels / order.picture.widthPixels))
   const inner = placePicture(partSides({ ...picture, orientation: picture.header.orientation }, order.geometry), width, height)
   const plane = new Uint16Array(inner.width * inner.height)

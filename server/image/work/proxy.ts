@@ -1,5 +1,6 @@
 import { closeSync, openSync, writeSync } from 'node:fs'
-import { decodePicture, lightPlane, type StoredPicture } from '../decode'
+import { decodePicture, type StoredPicture } from '../decode/decode'
+import { lightPlane } from '../light-plane'
 import type { Geometry, ImageCalls } from '../protocol'
 import { placePixels } from '../sample/placement'
 import { toneRows } from '../sample/tone-rows'
@@ -17,8 +18,8 @@ export function workingChannels(picture: StoredPicture, geometry: Geometry, widt
   return channels
 }
 
-export async function makeProxy({ path, target, geometry, width, height }: ImageCalls['proxy']['in']): Promise<ImageCalls['proxy']['out']> {
-  const channels = workingChannels(await decodePicture(path), geometry, width, height)
+export async function makeProxy({ target, geometry, width, height, ...source }: ImageCalls['proxy']['in']): Promise<ImageCalls['proxy']['out']> {
+  const channels = workingChannels(await decodePicture(source), geometry, width, height)
   const bytes = Buffer.from(channels.buffer)
   const file = openSync(target, 'w')
   try {

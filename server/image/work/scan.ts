@@ -3,13 +3,12 @@ import { locateByCorners, locateWedge, type LocatedWedge } from '#shared/calibra
 import { readLocated } from '#shared/calibration/reading/read-scan'
 import { readingWarning } from '#shared/calibration/reading/warnings'
 import type { WedgePage } from '#shared/calibration/wedge/page'
-import { inputOptions, orUnreadable } from '../decode'
+import { decodePicture, orUnreadable } from '../decode/decode'
+import { inputOptions } from '../decode/with-sharp'
 import { requireWithinBudget } from '../header/budget'
-import { pictureFormats } from '../header/header'
 import { readPictureHeader } from '../header/read-header'
-import type { ImageCalls } from '../protocol'
-import { decodeHeic } from '../scan/decode-heic'
-import { type DecodedScan, decodeScan } from '../scan/decode-scan'
+import type { ImageCalls, PictureSource } from '../protocol'
+import { type DecodedScan, decodeScan, withoutAlpha } from '../scan/decode-scan'
 import { identifyWedge } from '../scan/identity'
 
 /** The picture that was identified last, for the reading that follows; put away when none does. */
@@ -23,7 +22,7 @@ const [decodedShare, foundShare] = [0.4, 0.6]
 
 export async function identifyScan({ path, pages, corners }: ImageCalls['identifyScan']['in'], onProgress: Progress): Promise<ImageCalls['identifyScan']['out']> {
   kept = undefined
-  const scan = await decodeScan(path)
+  const scan = await decodeScan({ path })
   onProgress(decodedShare)
   const located = locate(scan, pages, corners)
   const code = await identifyWedge(scan.picture, located)
@@ -37,7 +36,7 @@ export async function identifyScan({ path, pages, corners }: ImageCalls['identif
 export async function readScan({ path, page, levels, corners, quality, paperLightness }: ImageCalls['readScan']['in']): Promise<ImageCalls['readScan']['out']> {
   const before = kept?.path === path ? kept : undefined
   kept = undefined
-  const scan = before?.scan ?? await decodeScan(path)
+  const scan = before?.scan ?? await decodeScan({ path })
   const wasThis = before?.located && before.corners === JSON.stringify(corners) && isSamePage(before.located.page, page)
   const located = wasThis ? before.located : locate(scan, [page], corners)
   if (!located) return { found: false, warnings: [readingWarning('not_found')] }
@@ -53,8 +52,8 @@ const locate = ({ picture }: DecodedScan, pages: WedgePage[], corners: ImageCall
 const isSamePage = (a: WedgePage, b: WedgePage): boolean => JSON.stringify(a) === JSON.stringify(b)
 
 /** The upright picture as a JPEG in sRGB, at most `width` wide, with the read parts of the patches drawn over it when asked. */
-export async function makeScanPicture({ path, target, width, cells }: ImageCalls['scanPicture']['in']): Promise<ImageCalls['scanPicture']['out']> {
-  const { picture, fullWidth } = await openForShowing(path)
+export async function makeScanPicture({ target, width, cells, ...source }: ImageCalls['scanPicture']['in']): Promise<ImageCalls['scanPicture']['out']> {
+  const { picture, fullWidth } = await openForShowing(source)
   const { data, info } = await orUnreadable(picture.resize({ width: Math.min(width, fullWidth) }).toColourspace('srgb').removeAlpha().raw().toBuffer({ resolveWithObject: true }))
   const shown = sharp(data, { raw: { width: info.width, height: info.height, channels: info.channels } })
   const drawn = cells ? shown.composite([{ input: Buffer.from(cellsSvg(cells, info.width, info.height, info.width / fullWidth)) }]) : shown
@@ -62,14 +61,15 @@ export async function makeScanPicture({ path, target, width, cells }: ImageCalls
   return { width: info.width, height: info.height }
 }
 
-async function openForShowing(path: string): Promise<{ picture: Sharp, fullWidth: number }> {
-  const header = await readPictureHeader(path, pictureFormats)
+async function openForShowing(source: PictureSource): Promise<{ picture: Sharp, fullWidth: number }> {
+  const header = await readPictureHeader(source.path)
   requireWithinBudget(header)
-  if (header.format === 'heic') {
-    const { codes, width, height } = await orUnreadable(decodeHeic(path))
-    return { picture: sharp(codes, { raw: { width, height, channels: 4 } }), fullWidth: width }
+  if (header.format === 'heic' || header.format === 'avif') {
+    // Phones' colours are shown as sRGB's: the picture is only looked at.
+    const { codes, width, height, channels } = withoutAlpha(await decodePicture(source))
+    return { picture: sharp(codes, { raw: { width, height, channels: channels as 1 | 3 } }), fullWidth: width }
   }
-  return { picture: sharp(path, inputOptions).autoOrient(), fullWidth: header.orientation >= 5 ? header.height : header.width }
+  return { picture: sharp(source.path, inputOptions).autoOrient(), fullWidth: header.orientation >= 5 ? header.height : header.width }
 }
 
 /** A light line in a dark one, so that it shows on every tone. */

@@ -2,7 +2,8 @@ import sharp from 'sharp'
 import { mixWeights, neutralMix } from '#shared/tone/mix'
 import { linearToSrgb } from '#shared/tone/srgb'
 import { linearTable } from '#shared/tone/working-space'
-import { decodePicture, lightPlane } from '../decode'
+import { decodePicture } from '../decode/decode'
+import { lightPlane } from '../light-plane'
 import type { ImageCalls } from '../protocol'
 import { partSides, placePixels } from '../sample/placement'
 import { toneRows } from '../sample/tone-rows'
@@ -13,8 +14,8 @@ const wholePicture = { quarterTurns: 0, straightenDegrees: 0, crop: { x: 0, y: 0
 let greys: Uint8Array | undefined
 const greyTable = () => greys ??= Uint8Array.from(linearTable(), linear => Math.round(255 * linearToSrgb(Math.min(1, linear))))
 
-export async function makeThumbnail({ path, target, longerSide }: ImageCalls['thumbnail']['in']): Promise<ImageCalls['thumbnail']['out']> {
-  const picture = await decodePicture(path)
+export async function makeThumbnail({ target, longerSide, ...file }: ImageCalls['thumbnail']['in']): Promise<ImageCalls['thumbnail']['out']> {
+  const picture = await decodePicture(file)
   const source = { width: picture.width, height: picture.height, orientation: picture.header.orientation }
   const sides = partSides(source, wholePicture)
   const scale = Math.min(1, longerSide / Math.max(sides.width, sides.height))

@@ -26,9 +26,9 @@ const withSegment = (jpeg: Buffer, marker: number, body: Buffer) => {
 
 describe('a sound picture', () => {
   it('is known by its content, whatever its name', async () => {
-    expect(await probe(photo, 'holiday.png')).toEqual({ format: 'jpeg', width: 400, height: 300, orientation: 1, bitDepth: 8, colourProfile: 'sRGB, no profile' })
+    expect(await probe(photo, 'holiday.png')).toEqual({ format: 'jpeg', width: 400, height: 300, orientation: 1, bitDepth: 8, colourProfile: 'sRGB, no profile', notes: [] })
     expect(await probe(pngFile({ ...grey, icc: greyProfile(adobeCurve(), 'Rope works grey') }), 'scan.jpg'))
-      .toEqual({ format: 'png', width: 64, height: 48, orientation: 1, bitDepth: 8, colourProfile: 'Rope works grey' })
+      .toEqual({ format: 'png', width: 64, height: 48, orientation: 1, bitDepth: 8, colourProfile: 'Rope works grey', notes: [] })
     expect(await probe(pngFile({ ...grey, bitDepth: 16, icc: matrixProfile('p3', srgbCurve(), 'Wide phone') }))).toMatchObject({ bitDepth: 16, colourProfile: 'Wide phone' })
   })
 

@@ -1,4 +1,5 @@
 import { photoEndpoints } from '#shared/schemas/photos'
+import { pictureEndings, pictureMediaType } from '#shared/schemas/picture-formats'
 import { fileNameFrom } from '../../../../../services/file-names'
 import { requirePhoto } from '../../../../../services/photos'
 import { storageKeys } from '../../../../../storage'
@@ -7,6 +8,6 @@ export default defineRoute(photoEndpoints.photoFile, async ({ event, studio, idP
   const photo = await requirePhoto(studio, idParam('photo'))
   await sendStoredFile(event, {
     key: storageKeys.original(photo.studioId, photo.id), bytes: photo.bytes, etag: photo.sha256,
-    contentType: `image/${photo.format}`, cacheControl: privateForever, fileName: fileNameFrom(photo.name, photo.format === 'jpeg' ? 'jpg' : 'png'),
+    contentType: pictureMediaType(photo.format), cacheControl: privateForever, fileName: fileNameFrom(photo.name, pictureEndings[photo.format][0]),
   })
 })

@@ -1,0 +1,1 @@
+ALTER TABLE "photos" ADD COLUMN "notes" jsonb DEFAULT '[]'::jsonb NOT NULL;
