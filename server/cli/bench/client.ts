@@ -20,5 +20,8 @@ export async function signedIn(address: RunningService['address']) {
     return await response.json() as Record<string, unknown> & { id: string }
   }
   const { studio } = await json('POST', '/api/auth/register', { name: 'Bench', email: `${crypto.randomUUID()}@bench.example`, password: crypto.randomUUID() }) as unknown as { studio: { id: string } }
-  return { send, json, root: `/api/studios/${studio.id}` }
+  /** a body that is made while it is sent */
+  const stream = (method: string, path: string, body: ReadableStream, type: string) =>
+    fetch(address + path, { method, body, duplex: 'half', headers: { cookie, 'content-type': type } } as RequestInit)
+  return { send, json, stream, root: `/api/studios/${studio.id}` }
 }

@@ -9,4 +9,5 @@ export const suites: Record<string, () => Promise<{ run: Suite }>> = {
   preview: () => import('./preview'),
   render: () => import('./render'),
   reading: () => import('./reading'),
+  soak: () => import('./soak'),
 }

@@ -37,7 +37,7 @@ export function mutantOf(pictures: Record<string, Buffer>, seed: number): { name
   const names = Object.keys(pictures)
   const name = names[seed % names.length]!
   const random = seededRandom(seed)
-  let bytes = Buffer.from(pictures[name]!)
+  let bytes: Buffer = Buffer.from(pictures[name]!)
   for (let changes = 1 + random.below(4); changes > 0 && bytes.length > 16; changes--) bytes = changed(bytes, random)
   return { name, bytes }
 }
