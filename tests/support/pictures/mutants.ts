@@ -56,7 +56,7 @@ function changed(bytes: Buffer, random: SeededRandom): Buffer {
     case 3: if (at + 4 <= out.length) out.writeUInt32LE(numbers[random.below(numbers.length)]!, at); return out
     case 4: return Buffer.concat([bytes.subarray(0, at), bytes.subarray(at + length)])
     case 5: return Buffer.concat([bytes.subarray(0, at + length), bytes.subarray(at)])
-    case 6: return Buffer.from(out.fill(random.below(2) * 255, at, at + length))
+    case 6: return Buffer.from(out.fill(random.below(2) * 255, at, Math.min(out.length, at + length)))
     default: return bytes.subarray(0, Math.max(1, at))
   }
 }
