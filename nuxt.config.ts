@@ -13,8 +13,16 @@ export default defineNuxtConfig({
     head: {
       htmlAttrs: { lang: 'en' },
       titleTemplate: '%s · Emulside',
-      meta: [{ name: 'description', content: 'Negatives on film for photographs printed by contact on hand-coated paper.' }],
-      link: [{ rel: 'icon', type: 'image/svg+xml', href: '/mark.svg' }],
+      meta: [
+        { name: 'description', content: 'Negatives on film for photographs printed by contact on hand-coated paper.' },
+        { name: 'theme-color', content: '#F6F1E6' },
+        { name: 'apple-mobile-web-app-title', content: 'Emulside' },
+      ],
+      link: [
+        { rel: 'icon', type: 'image/svg+xml', href: '/mark.svg' },
+        { rel: 'apple-touch-icon', href: '/icons/apple-touch-icon.png' },
+        { rel: 'manifest', href: '/manifest.webmanifest' },
+      ],
       // Before the first paint: a flash of daylight in the dim room fogs paper.
       script: [{ innerHTML: 'if(localStorage.getItem("emulside-theme")==="dim")document.documentElement.dataset.theme="dim"', tagPosition: 'head' }],
     },

@@ -13,6 +13,7 @@ interface Records { slug: string, photo: string, negative: string, bench: string
 /** Every screen, by its page file: where it is, and what is there once it stands. */
 const screens: Record<string, { path: (r: Records) => string, stands: string, isPublic?: boolean }> = {
   'pages/index.vue': { path: () => '/', stands: 'h1', isPublic: true },
+  'pages/shared.vue': { path: () => '/shared?why=sign-in', stands: 'h1', isPublic: true },
   'pages/open-studio.vue': { path: () => '/open-studio', stands: 'h1', isPublic: true },
   'pages/s/[studio]/index.vue': { path: r => `/s/${r.slug}`, stands: 'h1' },
   'pages/s/[studio]/negatives/[negative].vue': { path: r => `/s/${r.slug}/negatives/${r.negative}`, stands: '.captions' },
