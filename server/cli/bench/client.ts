@@ -3,9 +3,15 @@ import type { RunningService } from './suite'
 /** A person of a studio of their own, signed in at the service. */
 export type Client = Awaited<ReturnType<typeof signedIn>>
 
-/** Registers a new person; `json` throws with what was answered when that was a refusal. */
+/** Registers a new person. */
 export async function signedIn(address: RunningService['address']) {
-  let cookie = ''
+  const client = clientAt(address)
+  const { studio } = await client.json('POST', '/api/auth/register', { name: 'Bench', email: `${crypto.randomUUID()}@bench.example`, password: crypto.randomUUID() }) as unknown as { studio: { id: string } }
+  return { ...client, root: `/api/studios/${studio.id}` }
+}
+
+/** Somebody with a cookie of before; `json` throws with what was answered when that was a refusal. */
+export function clientAt(address: string, cookie = '') {
   const send = async (method: string, path: string, body?: unknown) => {
     const form = body instanceof FormData
     const headers: Record<string, string> = { cookie, ...body === undefined || form ? {} : { 'content-type': 'application/json' } }
@@ -19,9 +25,8 @@ export async function signedIn(address: RunningService['address']) {
     if (!response.ok) throw new Error(`${method} ${path} answered ${response.status}: ${await response.text()}`)
     return await response.json() as Record<string, unknown> & { id: string }
   }
-  const { studio } = await json('POST', '/api/auth/register', { name: 'Bench', email: `${crypto.randomUUID()}@bench.example`, password: crypto.randomUUID() }) as unknown as { studio: { id: string } }
   /** a body that is made while it is sent */
   const stream = (method: string, path: string, body: ReadableStream, type: string) =>
     fetch(address + path, { method, body, duplex: 'half', headers: { cookie, 'content-type': type } } as RequestInit)
-  return { send, json, stream, root: `/api/studios/${studio.id}` }
+  return { address, send, json, stream, cookieHeader: () => cookie }
 }

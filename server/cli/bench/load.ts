@@ -1,6 +1,6 @@
 import { setTimeout as sleep } from 'node:timers/promises'
-import { crc32, deflateSync } from 'node:zlib'
 import { signedIn, type Client } from './client'
+import { pngOf } from './png'
 import { measured, type Measure, type SuiteContext } from './suite'
 
 const requestsPerSecond = 50
@@ -103,21 +103,8 @@ async function openLoop(client: Client, paths: string[]): Promise<{ latencies: n
   return { latencies: latencies.sort((a, b) => a - b), errors }
 }
 
-/** A PNG (ISO/IEC 15948) of smooth tones: 8-bit grey, no filter. */
+/** Smooth tones. */
 function gradientPng(width: number, height: number): Buffer {
-  const rows = Buffer.alloc(height * (width + 1))
-  for (let y = 0; y < height; y++) for (let x = 0; x < width; x++) rows[y * (width + 1) + 1 + x] = 255 * (x + y) / (width + height)
-  const header = Buffer.alloc(13)
-  header.writeUInt32BE(width, 0)
-  header.writeUInt32BE(height, 4)
-  header[8] = 8
-  return Buffer.concat([Buffer.from('\x89PNG\r\n\x1a\n', 'latin1'), chunk('IHDR', header), chunk('IDAT', deflateSync(rows, { level: 1 })), chunk('IEND', Buffer.alloc(0))])
-}
-
-function chunk(type: string, content: Buffer): Buffer {
-  const named = Buffer.concat([Buffer.from(type, 'latin1'), content])
-  const [length, check] = [Buffer.alloc(4), Buffer.alloc(4)]
-  length.writeUInt32BE(content.length)
-  check.writeUInt32BE(crc32(named))
-  return Buffer.concat([length, named, check])
+  const codes = Uint8Array.from({ length: width * height }, (_, i) => 255 * (i % width + Math.floor(i / width)) / (width + height))
+  return pngOf({ width, height, channels: 1, codes })
 }

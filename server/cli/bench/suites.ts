@@ -10,4 +10,5 @@ export const suites: Record<string, () => Promise<{ run: Suite }>> = {
   render: () => import('./render'),
   reading: () => import('./reading'),
   soak: () => import('./soak'),
+  uploads: () => import('./uploads'),
 }
