@@ -13,6 +13,7 @@ export interface CallOptions<E extends Endpoint> {
   query?: Input<E, 'query'>
   body?: Input<E, 'body'>
   signal?: AbortSignal
+  headers?: Record<string, string>
 }
 
 /** The address of a row of the contract: `:names` filled in, the query appended. */
@@ -31,7 +32,7 @@ export function useApi() {
   async function send(row: Endpoint, options: CallOptions<Endpoint>): Promise<Response> {
     const address = addressOf(row, options.params, options.query as object | undefined)
     const body = options.body === undefined ? undefined : JSON.stringify(options.body)
-    const headers: Record<string, string> = body === undefined ? {} : { 'content-type': 'application/json' }
+    const headers: Record<string, string> = { ...body === undefined ? {} : { 'content-type': 'application/json' }, ...options.headers }
     const answer = await fetch(address, { method: row.method, headers, body, signal: options.signal }).catch((error: Error) => {
       throw error.name === 'AbortError' ? error : unreachable()
     })
@@ -49,13 +50,6 @@ export function useApi() {
   const fetchFile = <const E extends Endpoint>(row: E, options: CallOptions<E> = {}) => send(row, options as CallOptions<Endpoint>)
 
   return { call, fetchFile }
-}
-
-/** Sends files as parts named `file`, telling how much is sent (0…1). */
-export function uploadFiles<const E extends Endpoint>(row: E, params: Params, files: File[], onProgress: (share: number) => void, signal?: AbortSignal): Promise<AnswerOf<E>> {
-  const form = new FormData()
-  for (const file of files) form.append('file', file)
-  return uploadForm(row, params, form, onProgress, signal)
 }
 
 /** Sends a form with files in it, telling how much is sent (0…1). */

@@ -42,14 +42,11 @@ export function usePhotos({ bin = false } = {}) {
     photos.items.value = photos.items.value.map(p => p.id === renamed.id ? renamed : p)
   }
 
-  const send = async (file: File, onShare: (share: number) => void, signal: AbortSignal) =>
-    (await uploadFiles(contract.uploadPhotos, studio.params, [file], onShare, signal)).items[0]!
-
   const thumbnailOf = (photo: Photo) => addressOf(contract.photoThumbnail, params(photo))
   const picturesOf = (photo: Photo) => {
     const newest = negativesOf.value.get(photo.id)?.[0]
     return newest ? negativePictures(studio.slug, newest) : { photo: thumbnailOf(photo) }
   }
 
-  return { photos, negativesOf, reload, takeIn, putIntoBin, restore, rename, send, thumbnailOf, picturesOf }
+  return { photos, negativesOf, reload, takeIn, putIntoBin, restore, rename, thumbnailOf, picturesOf }
 }

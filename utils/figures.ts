@@ -31,6 +31,12 @@ export function formatWhen(instant: string, now = new Date()): string {
   return new Intl.DateTimeFormat(figureLocale(), shape).format(date)
 }
 
+/** The date, with the year where it is another. */
+export function formatDay(instant: string, now = new Date()): string {
+  const date = new Date(instant)
+  return new Intl.DateTimeFormat(figureLocale(), { day: 'numeric', month: 'long', year: date.getFullYear() === now.getFullYear() ? undefined : 'numeric' }).format(date)
+}
+
 /** Bytes as a file manager shows them, in powers of ten. */
 export function formatBytes(bytes: number): string {
   const [divisor, unit] = bytes < 1e6 ? [1e3, 'kB'] : bytes < 1e9 ? [1e6, 'MB'] : [1e9, 'GB']

@@ -32,7 +32,7 @@ describe('UploadList', () => {
     const tries = list.findAll('button').filter(button => button.text() === 'Try again')
     expect(tries).toHaveLength(1)
     await tries[0]!.trigger('click')
-    expect(list.emitted('retry')).toEqual([[2]])
+    expect(list.emitted('goOn')).toEqual([[2]])
     expect(list.find('h2').text()).toBe('No photo was added')
   })
 
@@ -40,5 +40,26 @@ describe('UploadList', () => {
     const list = await mountList([upload(1, { state: 'kept', share: 1, alreadyHere: true }), upload(2, { state: 'kept', share: 1 })])
     expect(list.text()).toContain('picture 1.jpg was here already; nothing is kept twice.')
     expect(list.find('h2').text()).toBe('2 photos added')
+  })
+
+  it('says what each one waits for, and offers what helps', async () => {
+    const list = await mountList([
+      upload(1, { state: 'cut', share: 0.4 }), upload(2, { state: 'paused', share: 0.6 }), upload(3, { state: 'stored', share: 0.48 }),
+    ])
+    expect(list.text()).toContain('Waiting for the connection; it goes on by itself.')
+    expect(list.text()).toContain('paused at 60 %')
+    expect(list.text()).toContain('Choose picture 3.jpg again to go on at 48 %.')
+    const labels = list.findAll('button').map(button => button.attributes('aria-label'))
+    expect(labels).toEqual(['Pause: picture 1.jpg', 'Stop: picture 1.jpg', 'Go on: picture 2.jpg', 'Stop: picture 2.jpg', 'Choose again: picture 3.jpg', 'Remove: picture 3.jpg'])
+    const chosen = new File(['x'], 'picture 3.jpg')
+    const input = list.find('[data-testid=choose-again]')
+    Object.defineProperty(input.element, 'files', { value: [chosen], configurable: true })
+    await input.trigger('change')
+    expect(list.emitted('chooseAgain')).toEqual([[3, chosen]])
+  })
+
+  it('names what was broken off when nothing else is there', async () => {
+    expect((await mountList([upload(1, { state: 'stored' }), upload(2, { state: 'stored' })])).find('h2').text()).toBe('2 photos were broken off')
+    expect((await mountList([upload(1, { state: 'paused' })])).find('h2').text()).toBe('One photo is paused')
   })
 })

@@ -1,7 +1,9 @@
+import { createHash, randomFillSync } from 'node:crypto'
 import { readFileSync } from 'node:fs'
 import sharp from 'sharp'
 import { describe, expect, it } from 'vitest'
 import { newPage, phone, useBrowser } from '../support/browser'
+import { uploadForm } from '../support/pictures'
 import { newStudio } from '../support/studio'
 
 /** A CC0 photograph from Debian's libjxl-testdata, as the JPEG that a phone would send. */
@@ -41,7 +43,7 @@ describe('photos', () => {
     const bin = async () => {
       await page.getByRole('button', { name: 'More for blossom' }).click()
       await page.getByRole('menuitem', { name: 'Put into the bin' }).click()
-      await page.getByText('blossom is in the bin').waitFor()
+      await page.getByText('blossom is in the bin for 30 days').waitFor()
     }
     await bin()
     expect(await tile.count()).toBe(0)
@@ -80,6 +82,99 @@ describe('photos', () => {
     await page.keyboard.press('Enter')
     await page.locator('.photo-grid').getByText('Blossom by the weir').waitFor()
     expect((await agent.get(`${root}/photos`)).body.items[0].name).toBe('Blossom by the weir')
+    await context.close()
+  })
+
+  it('goes on over a cut connection by itself, and after a reload with the same file chosen again, on a phone', async () => {
+    const { agent, studio, root } = await newStudio()
+    const { page, context, errors } = await newPage({ agent, size: phone })
+    const side = 1000
+    const buffer = await sharp(randomFillSync(Buffer.alloc(3 * side * side)), { raw: { width: side, height: side, channels: 3 } }).png({ compressionLevel: 0 }).toBuffer()
+    const picture = { name: 'weir.png', mimeType: 'image/png', buffer }
+    const network = await context.newCDPSession(page)
+    const line = (uploadThroughput: number) => network.send('Network.emulateNetworkConditions', { offline: false, latency: 0, downloadThroughput: -1, uploadThroughput })
+    await page.goto(`/s/${studio.slug}/photos`)
+    await page.getByText('No photos yet').waitFor()
+    await line(400_000)
+    const isCut = (url: URL) => /\/uploads\/[^/]+$/.test(url.pathname)
+    await page.route(isCut, route => route.request().method() === 'PATCH' ? route.abort('connectionreset') : route.fallback())
+    await page.setInputFiles('[data-testid=photo-files]', [picture])
+    const waits = page.getByText('Waiting for the connection; it goes on by itself.')
+    await waits.waitFor()
+    await page.unroute(isCut)
+    await waits.waitFor({ state: 'hidden' })
+    const bar = page.getByRole('progressbar', { name: 'weir.png' })
+    const share = async () => Number(await bar.getAttribute('aria-valuenow'))
+    await expect.poll(share, { timeout: 20_000 }).toBeGreaterThan(20)
+
+    await page.reload()
+    await page.getByText(/^Choose weir\.png again to go on at \d+ %\.$/).waitFor()
+    await page.setInputFiles('[data-testid=choose-again]', [{ ...picture, buffer: Buffer.from(buffer).fill(7, 2_000_000) }])
+    await page.getByText(/^This is another file/).waitFor()
+    const atReload = await share()
+    expect(atReload).toBeGreaterThan(10)
+    await page.setInputFiles('[data-testid=choose-again]', [picture])
+    await expect.poll(share, { timeout: 20_000 }).toBeGreaterThan(atReload)
+    await page.getByRole('button', { name: 'Pause: weir.png' }).click()
+    await page.getByText(/^paused at \d+ %$/).waitFor()
+    await line(-1)
+    await page.getByRole('button', { name: 'Go on: weir.png' }).click()
+    await page.getByRole('heading', { name: 'One photo added' }).waitFor()
+    await page.locator('.photo-grid').getByText('weir', { exact: true }).waitFor()
+    const { items } = (await agent.get(`${root}/photos`)).body
+    expect(items.map((photo: { sha256: string }) => photo.sha256)).toEqual([createHash('sha256').update(buffer).digest('hex')])
+    expect(await page.evaluate(() => document.documentElement.scrollWidth)).toBe(390)
+    expect(errors).toEqual([])
+    await context.close()
+  })
+
+  it('asks before it takes what another program has shared', async () => {
+    const { agent, studio } = await newStudio()
+    const form = uploadForm([['sprig.jpg', (await photograph('sprig.jpg', 300)).buffer]])
+    const shared = await agent.call('POST', '/share', { body: form, headers: { 'sec-fetch-site': 'none' } })
+    const { page, context } = await newPage({ agent, size: phone })
+    await page.goto(shared.headers.get('location')!)
+    await page.getByRole('heading', { name: `Take this picture into ${studio.name}?` }).waitFor()
+    expect(await page.locator('.photo-grid > li').count()).toBe(0)
+    await page.getByRole('button', { name: 'Take it' }).click()
+    await page.locator('.photo-grid').getByText('sprig', { exact: true }).waitFor()
+    await context.close()
+  })
+
+  it('takes nothing that another site’s page sends in the name of who is signed in', async () => {
+    const { agent, root } = await newStudio()
+    const { page, context } = await newPage({ agent })
+    await page.route('http://elsewhere.example/**', route => route.fulfill({ contentType: 'text/html', body: '<form method="post" enctype="multipart/form-data"><input type="file" name="file"></form>' }))
+    await page.goto('http://elsewhere.example/')
+    const answered = page.waitForResponse(response => response.url().endsWith('/share'))
+    await page.evaluate((address) => {
+      const files = new DataTransfer()
+      files.items.add(new File(['not yours'], 'planted.jpg', { type: 'image/jpeg' }))
+      document.querySelector('input')!.files = files.files
+      const form = document.querySelector('form')!
+      form.action = `${address}/share`
+      form.submit()
+    }, agent.address)
+    const answer = await answered
+    const sent = await answer.request().allHeaders()
+    expect([answer.status(), sent.origin]).toEqual([403, 'http://elsewhere.example'])
+    expect((await agent.get(`${root}/uploads`)).body.items).toEqual([])
+    await context.close()
+  })
+
+  it('can be put on a home screen: the manifest names icons that are there, and where pictures are shared to', async () => {
+    const { page, context } = await newPage()
+    await page.goto('/')
+    const cdp = await context.newCDPSession(page)
+    const { url, errors, data } = await cdp.send('Page.getAppManifest')
+    expect([new URL(url).pathname, errors]).toEqual(['/manifest.webmanifest', []])
+    const manifest = JSON.parse(data!) as { icons: { src: string, sizes: string, type: string, purpose?: string }[], share_target: { action: string } }
+    for (const { src, sizes } of manifest.icons.filter(icon => icon.type === 'image/png')) {
+      const { width, height } = await sharp(Buffer.from(await (await page.request.get(src)).body())).metadata()
+      expect(`${width}x${height}`).toBe(sizes)
+    }
+    expect(manifest.icons.some(icon => icon.purpose === 'maskable')).toBe(true)
+    expect(manifest.share_target.action).toBe('/share')
     await context.close()
   })
 })
