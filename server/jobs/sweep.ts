@@ -1,9 +1,11 @@
-import { and, eq, isNotNull, ne, sql } from 'drizzle-orm'
+import { and, eq, isNotNull, lte, ne, or, sql } from 'drizzle-orm'
+import { retentionDays } from '#shared/schemas/retention'
 import { readSettings } from '../config'
 import { db } from '../db/client'
-import { photos, readings, renders } from '../db/schema'
+import { photos, readings, renders, uploads } from '../db/schema'
 import { storage } from '../services/storage'
-import { storageKeys } from '../storage'
+import { removeUpload } from '../services/uploads'
+import { partsFolder, storageKeys } from '../storage'
 
 const olderThan = (seconds: number) => ({ changedAt }: { changedAt: number }) => changedAt < Date.now() - 1000 * seconds
 
@@ -12,7 +14,7 @@ const latenessSeconds = 3
 
 /** Removes temporary files whose owner has let their lease run out, with what they left half done. */
 export async function sweepTemporaryFiles(leaseSeconds: number): Promise<string[]> {
-  const stale = (await storage().list('temporary')).filter(olderThan(leaseSeconds + latenessSeconds))
+  const stale = (await storage().list('temporary')).filter(({ key }) => !key.startsWith(`${partsFolder}/`)).filter(olderThan(leaseSeconds + latenessSeconds))
   for (const { key } of stale) {
     const [, studioId, photoId] = /^temporary\/photo_([^_.]+)_([^_.]+)\./.exec(key) ?? []
     if (studioId && photoId) await removeUnrecorded(studioId, photoId)
@@ -51,6 +53,24 @@ export async function sweepScans(): Promise<string[]> {
   const orphans = files.map(({ key }) => key).filter(key => !named.has(key))
   for (const key of orphans) await storage().remove(key)
   return orphans
+}
+
+/** A part stands before its row is read for moments, not for this long. */
+const unrecordedPartSeconds = 3600
+
+/** Removes uploads whose time is up, finished or not, and parts that no row names. */
+export async function sweepUploads(): Promise<{ expired: number, orphans: number }> {
+  const since = (days: number) => sql`now() - make_interval(secs => ${86_400 * days})`
+  const expired = await db().select({ studioId: uploads.studioId, id: uploads.id }).from(uploads)
+    .where(or(and(eq(uploads.state, 'unfinished'), lte(uploads.createdAt, since(retentionDays.unfinishedUpload))), lte(uploads.finishedAt, since(retentionDays.finishedUpload))))
+  for (const row of expired) await removeUpload(row)
+  const parts = (await storage().list(partsFolder)).filter(olderThan(unrecordedPartSeconds))
+  if (parts.length === 0) return { expired: expired.length, orphans: 0 }
+  const rows = await db().select({ studioId: uploads.studioId, id: uploads.id }).from(uploads).where(eq(uploads.state, 'unfinished'))
+  const named = new Set(rows.map(row => storageKeys.part(row.studioId, row.id)))
+  const orphans = parts.filter(({ key }) => !named.has(key))
+  for (const { key } of orphans) await storage().remove(key)
+  return { expired: expired.length, orphans: orphans.length }
 }
 
 /** Puts the films that were not used for longest out of the cache, until it fits its size; pinned ones stay. */

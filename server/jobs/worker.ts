@@ -3,7 +3,7 @@ import { setTimeout as sleep } from 'node:timers/promises'
 import PgBoss from 'pg-boss'
 import type { Settings } from '../config'
 import { openDatabase } from '../db/client'
-import { eraseWhatIsDue } from '../services/erasure'
+import { eraseBinnedPhotos, eraseWhatIsDue } from '../services/erasure'
 import { closeImageChildren } from '../services/image-child'
 import { jobHandlers, requireHandlers, type JobContext, type JobHandler } from './handlers'
 import { type LeaseSettings, type Report, workOnNext } from './leased-work'
@@ -11,7 +11,7 @@ import { sendNextLetter } from './letter-work'
 import { jobNames, type JobName } from './names'
 import { readingWork } from './reading-work'
 import { filmWork } from './render-work'
-import { shrinkFilmCache, shrinkPictureCache, sweepFilms, sweepScans, sweepTemporaryFiles } from './sweep'
+import { shrinkFilmCache, shrinkPictureCache, sweepFilms, sweepScans, sweepTemporaryFiles, sweepUploads } from './sweep'
 
 export interface Worker { stop: () => Promise<void> }
 
@@ -55,6 +55,10 @@ export async function runWorker(settings: Settings, report: Report = () => {}): 
     if (orphans.length) report('sweep.films', { files: orphans.length })
     const scansLeft = await sweepScans()
     if (scansLeft.length) report('sweep.scans', { files: scansLeft.length })
+    const { expired, orphans: lostParts } = await sweepUploads()
+    if (expired + lostParts > 0) report('sweep.uploads', { expired, lostParts })
+    const binned = await eraseBinnedPhotos()
+    if (binned.length) report('sweep.bin', { photos: binned.length })
     await shrinkPictureCache(settings.PICTURE_CACHE_MAX_BYTES)
     for (const erased of await eraseWhatIsDue()) report('erasure.done', erased)
     await pause(tidySeconds, noMore.signal)

@@ -1,5 +1,6 @@
 import { and, eq, lte, or, sql } from 'drizzle-orm'
 import { ComputeError } from '#shared/errors'
+import { retentionDays } from '#shared/schemas/retention'
 import { readSettings } from '../config'
 import { db, type Queryable, type Transaction } from '../db/client'
 import * as tables from '../db/schema'
@@ -7,15 +8,17 @@ import { accountErasureLetter, studioErasureLetter } from '../mail/letters'
 import { studioFolders, storageKeys } from '../storage'
 import type { StudioAccess } from './access'
 import { recordEvent } from './audit'
+import { hint } from './hints'
 import { postLetter } from './letters'
 import { publicOrigin } from './origin'
 import { storage } from './storage'
+import { removeUpload } from './uploads'
 
-const { users, studios, memberships, photos, negatives, renders, sessions, tokens, letterLinks, letters, invitations } = tables
+const { users, studios, memberships, photos, negatives, renders, sessions, tokens, letterLinks, letters, invitations, uploads } = tables
 
 /** Every table that belongs to a studio, those that refer to others first. A test holds it against the database. */
 export const studioTables = [
-  tables.renders, tables.negatives, tables.walkStepRows, tables.filmDensities, tables.tablets, tables.curveReadings, tables.readings,
+  tables.uploads, tables.renders, tables.negatives, tables.walkStepRows, tables.filmDensities, tables.tablets, tables.curveReadings, tables.readings,
   tables.wedgePrints, tables.wedges, tables.curves, tables.baseExposures, tables.benches, tables.scannerProfiles,
   tables.papers, tables.sensitizers, tables.films, tables.inkjets, tables.lamps, tables.scanners, tables.photos,
   tables.invitations, tables.tokens, tables.letters, tables.memberships,
@@ -97,8 +100,10 @@ async function eraseStudio(studioId: string): Promise<void> {
 /** What is the person's own goes; what they did for a studio stays, under no name. */
 async function eraseAccount(userId: string): Promise<void> {
   for (const { id } of await studiosRunAlone(db(), userId)) await eraseStudio(id)
+  const underWay = await db().select({ studioId: uploads.studioId, id: uploads.id }).from(uploads).where(eq(uploads.personId, userId))
+  for (const upload of underWay) await removeUpload(upload)
   const own = await db().select({ studioId: photos.studioId, id: photos.id }).from(photos).where(eq(photos.uploaderId, userId))
-  for (const { studioId, id } of own) await erasePhoto(studioId, id)
+  for (const { studioId, id } of own) await db().transaction(tx => erasePhoto(tx, studioId, id))
   await db().transaction(async (tx) => {
     await tx.delete(negatives).where(eq(negatives.createdBy, userId))
     for (const table of [sessions, tokens, letterLinks, letters, memberships]) await tx.delete(table).where(eq(table.userId, userId))
@@ -108,14 +113,31 @@ async function eraseAccount(userId: string): Promise<void> {
   })
 }
 
-async function erasePhoto(studioId: string, photoId: string): Promise<void> {
-  const films = await db().select().from(renders).where(and(eq(renders.studioId, studioId), eq(renders.photoId, photoId)))
+/** Erases photos that have lain in the bin for their time, with their files and with what was made of them; tells which. */
+export async function eraseBinnedPhotos(days: number = retentionDays.binnedPhoto): Promise<string[]> {
+  const isDue = lte(photos.binnedAt, sql`now() - make_interval(secs => ${86_400 * days})`)
+  const due = await db().select({ studioId: photos.studioId, id: photos.id }).from(photos).where(isDue)
+  const erased: string[] = []
+  for (const { studioId, id } of due) {
+    await db().transaction(async (tx) => {
+      // Locked and looked at again: it may have been taken out of the bin meanwhile.
+      const [row] = await tx.select({ uploaderId: photos.uploaderId }).from(photos).where(and(eq(photos.studioId, studioId), eq(photos.id, id), isDue)).for('update')
+      if (!row) return
+      await erasePhoto(tx, studioId, id)
+      await recordEvent(tx, { studioId, kind: 'photo.erased', recordId: id })
+      await hint(tx, { studioId, topic: 'photos', id, onlyFor: row.uploaderId })
+      erased.push(id)
+    })
+  }
+  return erased
+}
+
+/** Files before rows: an erasure that is broken off is taken up again while its row is there. */
+async function erasePhoto(tx: Transaction, studioId: string, photoId: string): Promise<void> {
+  const films = await tx.select().from(renders).where(and(eq(renders.studioId, studioId), eq(renders.photoId, photoId)))
   for (const film of films) await storage().remove(storageKeys.film(studioId, film.renderKey, film.format))
   await storage().removeFolder(storageKeys.pictureFolder(studioId, photoId))
   await storage().remove(storageKeys.original(studioId, photoId))
-  await db().transaction(async (tx) => {
-    await tx.delete(renders).where(and(eq(renders.studioId, studioId), eq(renders.photoId, photoId)))
-    await tx.delete(negatives).where(and(eq(negatives.studioId, studioId), eq(negatives.photoId, photoId)))
-    await tx.delete(photos).where(and(eq(photos.studioId, studioId), eq(photos.id, photoId)))
-  })
+  for (const table of [renders, negatives, uploads]) await tx.delete(table).where(and(eq(table.studioId, studioId), eq(table.photoId, photoId)))
+  await tx.delete(photos).where(and(eq(photos.studioId, studioId), eq(photos.id, photoId)))
 }

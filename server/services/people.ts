@@ -61,6 +61,13 @@ export async function signOutEverywhere(userId: string): Promise<void> {
   })
 }
 
+/** The studio that a person last put a photo into, else the one they joined first. */
+export async function lastUsedStudio(userId: string): Promise<string | undefined> {
+  const [row] = await db().select({ id: memberships.studioId }).from(memberships).where(eq(memberships.userId, userId))
+    .orderBy(sql`(select max(created_at) from photos where photos.studio_id = ${memberships.studioId} and photos.uploader_id = ${userId}) desc nulls last`, asc(memberships.createdAt)).limit(1)
+  return row?.id
+}
+
 export async function studiosOf(userId: string): Promise<StudioMembership[]> {
   return await db().select({ id: studios.id, slug: studios.slug, name: studios.name, role: memberships.role })
     .from(memberships).innerJoin(studios, eq(studios.id, memberships.studioId)).where(eq(memberships.userId, userId)).orderBy(asc(memberships.createdAt), asc(studios.id))

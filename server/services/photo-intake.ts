@@ -20,7 +20,16 @@ import { storage } from './storage'
 export const thumbnailLongerSidePixels = 480
 
 /** A picture file that has arrived whole, under a temporary name, or why it was not taken. */
-export interface Arrival { id: string, fileName: string, bytes: number, sha256: string, file?: TemporaryFile, refusal?: ComputeError }
+export interface Arrival {
+  id: string
+  fileName: string
+  bytes: number
+  sha256: string
+  file?: TemporaryFile
+  refusal?: ComputeError
+  /** of the studio's room, what was set aside for it before it came */
+  reservedBytes?: number
+}
 type WholeArrival = Arrival & { file: TemporaryFile }
 type Refused = z.infer<typeof refusedFile>
 export interface Intake { items: Photo[], refused: Refused[], anyNew: boolean }
@@ -74,7 +83,7 @@ async function takePhoto(studio: StudioAccess, arrival: WholeArrival): Promise<{
 
 /** Files first, row last. The row's lock on the studio keeps its limit, and equal uploads, one after the other. */
 async function store(tx: Transaction, studio: StudioAccess, arrival: WholeArrival, facts: PictureFacts, made: { thumbnail: TemporaryFile, working: TemporaryFile }) {
-  await requireRoom(tx, studio.id, arrival.bytes)
+  await requireRoom(tx, studio.id, arrival.bytes - (arrival.reservedBytes ?? 0))
   const known = await sameBytes(tx, studio, arrival.sha256)
   if (known) return { photo: await bringBack(tx, known), isNew: false }
 

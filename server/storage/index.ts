@@ -99,11 +99,15 @@ async function flush(path: string): Promise<void> {
   await file.sync().finally(() => file.close())
 }
 
+/** Where uploads grow until they are whole: their rows, and no lease, say how long they stay. */
+export const partsFolder = 'temporary/parts'
+
 /** The folders that hold a studio's files. */
-export const studioFolders = (studioId: string) => ['originals', 'cache', 'films', 'scans'].map(kind => `${kind}/${studioId}`)
+export const studioFolders = (studioId: string) => ['originals', 'cache', 'films', 'scans', partsFolder].map(kind => `${kind}/${studioId}`)
 
 export const storageKeys = {
   original: (studioId: string, photoId: string) => `originals/${studioId}/${photoId}`,
+  part: (studioId: string, uploadId: string) => `${partsFolder}/${studioId}/${uploadId}`,
   scan: (studioId: string, readingId: string) => `scans/${studioId}/${readingId}`,
   pictureFolder: (studioId: string, photoId: string) => `cache/${studioId}/${photoId}`,
   thumbnail: (studioId: string, photoId: string) => `cache/${studioId}/${photoId}/thumbnail.jpg`,

@@ -19,7 +19,9 @@ export function errorAnswerOf(error: unknown): ErrorAnswer {
 
 export function answerError(event: H3Event, error: unknown): ErrorAnswer {
   const answer = errorAnswerOf(error)
-  event.node.req.resume() // the rest of a refused body is read away: a sender in the middle of it gets the answer, not a reset
+  // The rest of a refused body is read away, on a connection that we don't close first, whatever was asked: a sender in the middle of it gets the answer, not a reset.
+  event.node.req.resume()
+  if (!event.node.req.complete) event.node.res.shouldKeepAlive = true
   if (answer.statusCode === 500) log('error', 'request.error', { requestId: event.context.requestId, error })
   if (event.node.res.headersSent) {
     event.node.res.destroy() // half an answer must not look like a whole one

@@ -8,6 +8,7 @@ import type { H3Event } from 'h3'
 import { ComputeError, type ErrorCode } from '#shared/errors'
 import type { Arrival } from '../services/photo-intake'
 import type { TemporaryFile } from '../storage'
+import { bePatientWith } from './patience'
 
 export interface ReceivingRules {
   /** name of the parts that are taken */
@@ -21,10 +22,6 @@ export interface ReceivingRules {
   /** hears the parts that are no files */
   onField?: (name: string, value: string) => void
 }
-
-/** A slow line may need long for a large picture; one that has gone silent is cut. */
-const requestTimeoutMs = 3600_000
-const silenceTimeoutMs = 60_000
 
 /**
  * Streams the file parts of a multipart body to temporary files, hashing on the way: memory stays at a few pieces.
@@ -78,17 +75,13 @@ const malformed = () => new ComputeError('malformed_body', 'The upload is incomp
 
 /** Resolves when the form has ended; a sender who goes away or writes nonsense rejects. */
 function feed(request: IncomingMessage, form: busboy.Busboy): Promise<void> {
-  const server = (request.socket as { server?: { requestTimeout: number } }).server
-  if (server) server.requestTimeout = Math.max(server.requestTimeout, requestTimeoutMs)
+  const calm = bePatientWith(request)
   return new Promise<void>((resolve, reject) => {
-    const silence = () => request.destroy()
     const cut = () => { if (!request.complete) form.destroy(malformed()) }
-    request.socket.setTimeout(silenceTimeoutMs, silence)
     request.once('close', cut)
     const settle = (end: () => void) => {
       request.off('close', cut)
-      request.socket.setTimeout(0)
-      request.socket.off('timeout', silence)
+      calm()
       end()
     }
     form.once('close', () => settle(resolve))

@@ -10,6 +10,7 @@ import { peopleEndpoints } from './people'
 import { photoEndpoints } from './photos'
 import { scanEndpoints } from './scans'
 import { shelfEndpoints } from './shelf'
+import { uploadEndpoints } from './uploads'
 import { wedgeEndpoints } from './wedges'
 
 const serviceEndpoints = {
@@ -21,5 +22,5 @@ const serviceEndpoints = {
 
 /** Every route of the service, by name. Validation, types and the OpenAPI document all come from here. */
 export const contract = {
-  ...serviceEndpoints, ...peopleEndpoints, ...accountEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints, ...tabletEndpoints, ...scannerProfileEndpoints, ...comparisonEndpoints, ...findingEndpoints, ...photoEndpoints, ...negativeEndpoints, ...wedgeEndpoints,
+  ...serviceEndpoints, ...peopleEndpoints, ...accountEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints, ...tabletEndpoints, ...scannerProfileEndpoints, ...comparisonEndpoints, ...findingEndpoints, ...photoEndpoints, ...uploadEndpoints, ...negativeEndpoints, ...wedgeEndpoints,
 } satisfies Record<string, Endpoint>

@@ -10,7 +10,7 @@ export type Access = 'public' | 'session' | 'fresh-session' | 'member' | 'techni
 export type AnswerShape = z.ZodType | readonly string[] | null
 
 export interface Endpoint {
-  method: 'GET' | 'POST' | 'PATCH' | 'PUT' | 'DELETE'
+  method: 'GET' | 'HEAD' | 'OPTIONS' | 'POST' | 'PATCH' | 'PUT' | 'DELETE'
   path: `/api${string}`
   access: Access
   /** `session`: a bearer token does not do */

@@ -14,8 +14,11 @@ export const limits = {
   pixelsPerInchMin: 72,
   pixelsPerInchMax: 1440,
   filmMaxPixels: 200_000_000,
+  fileNameLength: 255,
   fileMaxBytes: 1_000_000_000,
   /** pictures in one upload */
   uploadMaxFiles: 100,
+  /** a person’s uploads that are not finished, in a studio */
+  openUploads: 100,
   pageMax: 100,
 } as const

@@ -9,8 +9,9 @@ import type { RouteCase } from './routes/route-case'
 import { scanCases } from './routes/scans'
 import { serviceCases } from './routes/service'
 import { shelfCases } from './routes/shelf'
+import { uploadCases } from './routes/uploads'
 import { walkCases } from './routes/walk'
 import { wedgeCases } from './routes/wedges'
 
 /** Every handler of the service, each with a good call of it. What must be refused follows from the contract, or is named. */
-export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...accountCases, ...shelfCases, ...benchCases, ...curveCases, ...calibrationCases, ...scanCases, ...walkCases, ...photoCases, ...negativeCases, ...wedgeCases]
+export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...accountCases, ...shelfCases, ...benchCases, ...curveCases, ...calibrationCases, ...scanCases, ...walkCases, ...photoCases, ...uploadCases, ...negativeCases, ...wedgeCases]

@@ -1,0 +1,3 @@
+import { uploadEndpoints } from '#shared/schemas/uploads'
+
+export default defineRoute(uploadEndpoints.sendUpload, ({ event, studio, idParam }) => answerTus(event, studio, idParam('upload')))
