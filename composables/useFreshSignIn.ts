@@ -2,10 +2,11 @@ import { contract } from '#build/client-contract'
 
 /**
  * For what asks for a sign-in of the last ten minutes: `attempt` runs the work; where the service wants a fresh one,
- * the password is asked for (`SignInAgainDialog`) and the work done again.
+ * the password, or a student's personal code, is asked for (`SignInAgainDialog`) and the work done again.
  */
 export function useFreshSignIn() {
   const { call } = useApi()
+  const session = useSessionStore()
   const isAsking = ref(false)
   const problem = ref<string | null>(null)
   const isBusy = ref(false)
@@ -31,8 +32,9 @@ export function useFreshSignIn() {
     }
   }
 
-  const again = (password: string) => attempt(async () => {
-    await call(contract.signInAgain, { body: { password } })
+  const again = (secret: string) => attempt(async () => {
+    if (session.user?.email) await call(contract.signInAgain, { body: { password: secret } })
+    else await session.returnToClass(secret)
     const work = waiting
     waiting = null
     isAsking.value = false

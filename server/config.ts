@@ -43,6 +43,8 @@ export const settingsSchema = z.object({
   LETTER_ATTEMPT_SECONDS: seconds(60),
   /** days between asking for an erasure and its being done */
   ERASURE_GRACE_DAYS: z.coerce.number().min(0).default(14),
+  /** days after a class's end in which its students can still take their things along; then they are erased */
+  CLASS_TAKE_ALONG_DAYS: z.coerce.number().min(0).default(30),
   LOG_LEVEL: z.enum(['debug', 'info', 'warn', 'error']).default('info'),
   /** answers are checked against the contract before they leave: on in tests */
   CHECK_ANSWERS: flag(false),

@@ -33,6 +33,17 @@ export const useSessionStore = defineStore('session', () => {
     return studio
   }
 
+  /** Into a class with a first name alone; the personal code is shown once. */
+  async function joinClass(roomCode: string, firstName: string): Promise<string> {
+    const { user, studio, personalCode } = await call(contract.joinClass, { body: { roomCode, firstName } })
+    take({ user, studios: [studio] })
+    return personalCode
+  }
+
+  async function returnToClass(personalCode: string) {
+    take(await call(contract.returnToClass, { body: { personalCode } }))
+  }
+
   async function signOut() {
     await call(contract.logout)
     forget()
@@ -44,7 +55,7 @@ export const useSessionStore = defineStore('session', () => {
     rememberStudio(undefined)
   }
 
-  return { user, studios, take, ensure, refresh, signIn, signUp, signOut, forget }
+  return { user, studios, take, ensure, refresh, signIn, signUp, joinClass, returnToClass, signOut, forget }
 })
 
 const studioKey = 'emulside-studio'

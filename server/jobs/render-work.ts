@@ -1,6 +1,7 @@
 import { ComputeError } from '#shared/errors'
 import { renders } from '../db/schema'
 import type { CallOptions } from '../image/pool'
+import { hintBoardOfPhoto } from '../services/class-hints'
 import { filmChild } from '../services/image-child'
 import { hintRender, type RenderRow } from '../services/renders'
 import { photoSource } from '../services/photo-pictures'
@@ -16,12 +17,13 @@ export const filmWork: LeasedWork<typeof renders> = {
   noun: 'render',
   leases,
   async work(lease, calls, { owner }) {
-    const { studioId, renderKey, format } = lease.row
+    const { studioId, photoId, renderKey, format } = lease.row
     const file = await storage().temporary(`film_${owner}`)
     try {
       const made = await callFor(lease.row, file.path, calls)
-      await leases.commit(lease, async () => {
+      await leases.commit(lease, async (tx) => {
         await file.keep(storageKeys.film(studioId, renderKey, format))
+        if (photoId) await hintBoardOfPhoto(tx, studioId, photoId)
         return { ...made, lastUsedAt: new Date() }
       })
     }

@@ -3,6 +3,7 @@ import { setTimeout as sleep } from 'node:timers/promises'
 import PgBoss from 'pg-boss'
 import type { Settings } from '../config'
 import { openDatabase } from '../db/client'
+import { erasePastStudents } from '../services/class-erasure'
 import { eraseBinnedPhotos, eraseWhatIsDue } from '../services/erasure'
 import { closeImageChildren } from '../services/image-child'
 import { jobHandlers, requireHandlers, type JobContext, type JobHandler } from './handlers'
@@ -60,7 +61,7 @@ export async function runWorker(settings: Settings, report: Report = () => {}): 
     const binned = await eraseBinnedPhotos()
     if (binned.length) report('sweep.bin', { photos: binned.length })
     await shrinkPictureCache(settings.PICTURE_CACHE_MAX_BYTES)
-    for (const erased of await eraseWhatIsDue()) report('erasure.done', erased)
+    for (const erased of [...await eraseWhatIsDue(), ...await erasePastStudents()]) report('erasure.done', erased)
     await pause(tidySeconds, noMore.signal)
   })
 

@@ -6,6 +6,7 @@ import { db, type Transaction } from '../db/client'
 import { letterLinks, users } from '../db/schema'
 import { addressChangedLetter, confirmAddressLetter, passwordChangedLetter, resetLetter } from '../mail/letters'
 import { recordEvent } from './audit'
+import { keepStudent } from './class-students'
 import { postLetter } from './letters'
 import { publicOrigin } from './origin'
 import { hashPassword, passwordMatches } from './passwords'
@@ -67,13 +68,23 @@ export async function resetPassword(token: string, password: string): Promise<Si
   })
 }
 
-/** A letter to the new address; the account keeps the old one until its link is followed. */
-export async function requestEmailChange(user: User, newEmail: string): Promise<void> {
+/** A student's own account: it has its password at once and its address once the letter's link was followed; until then the class's rules hold. */
+export async function becomeAccount(user: User, { email, password }: { email: string, password: string }): Promise<void> {
+  if (user.email !== null) throw new ComputeError('wrong_state', 'This is an account with an address already.')
+  const passwordHash = await hashPassword(password)
   await db().transaction(async (tx) => {
-    await requireFreeAddress(tx, newEmail)
-    const secret = await newLink(tx, user.id, 'email-change', newEmail)
-    await postLetter(tx, { kind: 'email-change', to: newEmail, userId: user.id, content: confirmAddressLetter({ url: `${publicOrigin()}/confirm-address#${secret}`, minutes: linkMinutes }) })
+    await askForAddress(tx, user, email)
+    await tx.update(users).set({ passwordHash }).where(eq(users.id, user.id))
   })
+}
+
+/** A letter to the new address; the account keeps the old one until its link is followed. */
+export const requestEmailChange = (user: User, newEmail: string): Promise<void> => db().transaction(tx => askForAddress(tx, user, newEmail))
+
+async function askForAddress(tx: Transaction, user: User, newEmail: string): Promise<void> {
+  await requireFreeAddress(tx, newEmail)
+  const secret = await newLink(tx, user.id, 'email-change', newEmail)
+  await postLetter(tx, { kind: 'email-change', to: newEmail, userId: user.id, content: confirmAddressLetter({ url: `${publicOrigin()}/confirm-address#${secret}`, minutes: linkMinutes }) })
 }
 
 export async function confirmEmail(token: string): Promise<User> {
@@ -82,6 +93,7 @@ export async function confirmEmail(token: string): Promise<User> {
     const before = await userOf(tx, userId)
     await requireFreeAddress(tx, newEmail!)
     await tx.update(users).set({ email: newEmail! }).where(eq(users.id, userId))
+    await keepStudent(tx, userId)
     await recordEvent(tx, { userId, kind: 'person.address-changed', recordId: userId })
     await postLetter(tx, { kind: 'account-notice', to: before.email, userId, content: addressChangedLetter({ to: newEmail! }) })
     return { ...before, email: newEmail! }

@@ -21,7 +21,7 @@ export const studioTables = [
   tables.uploads, tables.renders, tables.negatives, tables.walkStepRows, tables.filmDensities, tables.tablets, tables.curveReadings, tables.readings,
   tables.wedgePrints, tables.wedges, tables.curves, tables.baseExposures, tables.benches, tables.scannerProfiles,
   tables.papers, tables.sensitizers, tables.films, tables.inkjets, tables.lamps, tables.scanners, tables.photos,
-  tables.invitations, tables.tokens, tables.letters, tables.memberships,
+  tables.classStudents, tables.classes, tables.invitations, tables.tokens, tables.letters, tables.memberships,
 ] as const
 
 const dueDate = () => sql`now() + make_interval(secs => ${86_400 * readSettings().ERASURE_GRACE_DAYS})`
@@ -47,7 +47,7 @@ export async function keepStudio(studio: StudioAccess): Promise<void> {
   })
 }
 
-export async function askAccountErasure(person: { id: string, email: string }): Promise<Date> {
+export async function askAccountErasure(person: { id: string, email: string | null }): Promise<Date> {
   return await db().transaction(async (tx) => {
     await requireNoOneLeftBehind(tx, person.id)
     const [row] = await tx.update(users).set({ eraseAfter: dueDate() }).where(eq(users.id, person.id)).returning()
@@ -98,7 +98,7 @@ async function eraseStudio(studioId: string): Promise<void> {
 }
 
 /** What is the person's own goes; what they did for a studio stays, under no name. */
-async function eraseAccount(userId: string): Promise<void> {
+export async function eraseAccount(userId: string): Promise<void> {
   for (const { id } of await studiosRunAlone(db(), userId)) await eraseStudio(id)
   const underWay = await db().select({ studioId: uploads.studioId, id: uploads.id }).from(uploads).where(eq(uploads.personId, userId))
   for (const upload of underWay) await removeUpload(upload)
@@ -107,6 +107,7 @@ async function eraseAccount(userId: string): Promise<void> {
   await db().transaction(async (tx) => {
     await tx.delete(negatives).where(eq(negatives.createdBy, userId))
     for (const table of [sessions, tokens, letterLinks, letters, memberships]) await tx.delete(table).where(eq(table.userId, userId))
+    await tx.delete(tables.classStudents).where(eq(tables.classStudents.id, userId))
     await tx.delete(invitations).where(or(eq(invitations.invitedBy, userId), eq(invitations.acceptedBy, userId)))
     await tx.update(users).set({ name: 'Erased account', email: `${userId}@erased.invalid`, passwordHash: null, eraseAfter: null, lettersOff: [] }).where(eq(users.id, userId))
     await recordEvent(tx, { userId, kind: 'person.erased', recordId: userId })

@@ -1,12 +1,15 @@
 import pg from 'pg'
 import { ComputeError } from '#shared/errors'
+import type { Role } from '#shared/schemas/people'
+import { hasRole } from './access'
 import { hintChannel, type Hint } from './hints'
 
 export interface HintStream {
   studioId: string
   personId: string
-  /** asked from time to time whether its person may still listen; throws while it can't be told */
-  mayListen: () => Promise<boolean>
+  role: Role
+  /** asked from time to time in which role its person may still listen, if at all; throws while it can't be told */
+  mayListen: () => Promise<Role | undefined>
   /** tells the listener to read everything again */
   resync: () => void
   send: (hint: Pick<Hint, 'topic' | 'id' | 'revision'>) => void
@@ -59,7 +62,7 @@ export function joinHints(stream: HintStream, recheckSeconds: number): () => voi
   stream.resync()
   const recheck = setInterval(() => {
     // The database may be away for a moment: asked again the next time.
-    stream.mayListen().catch(() => true).then(may => may || stream.end())
+    stream.mayListen().then(role => role ? stream.role = role : stream.end(), () => undefined)
   }, recheckSeconds * 1000)
   return () => {
     clearInterval(recheck)
@@ -68,7 +71,8 @@ export function joinHints(stream: HintStream, recheckSeconds: number): () => voi
 }
 
 function takeHint(hint: Hint): void {
-  const key = `${hint.studioId} ${hint.topic} ${hint.id}`
+  // Not to be merged with what others may know of the same record.
+  const key = `${hint.studioId} ${hint.topic} ${hint.id} ${hint.onlyFor ?? ''}`
   const waiting = pending.get(key)
   if (waiting) waiting.latest = hint
   else {
@@ -83,8 +87,8 @@ function afterGap(key: string): void {
   if (latest) takeHint(latest)
 }
 
-function deliver({ studioId, topic, id, revision, onlyFor }: Hint): void {
+function deliver({ studioId, topic, id, revision, onlyFor, leastRole }: Hint): void {
   for (const stream of streams) {
-    if (stream.studioId === studioId && (!onlyFor || onlyFor === stream.personId)) stream.send({ topic, id, revision })
+    if (stream.studioId === studioId && (!onlyFor || onlyFor === stream.personId) && (!leastRole || hasRole(stream.role, leastRole))) stream.send({ topic, id, revision })
   }
 }

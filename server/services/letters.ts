@@ -7,10 +7,12 @@ import { sendJob } from '../jobs/queue'
 import { letterHtml, letterText, type LetterContent } from '../mail/letter'
 import { publicOrigin } from './origin'
 
-export interface Letter { kind: LetterKind, to: string, userId?: string, studioId?: string, content: LetterContent }
+/** `to` is null for students of a class, who have no address. */
+export interface Letter { kind: LetterKind, to: string | null, userId?: string, studioId?: string, content: LetterContent }
 
-/** Puts a letter into the outbox, in the transaction of what it tells of; nothing when its receiver has switched the kind off. */
+/** Puts a letter into the outbox, in the transaction of what it tells of; nothing when its receiver has no address, or has switched the kind off. */
 export async function postLetter(tx: Transaction, { kind, to, userId, studioId, content }: Letter): Promise<string | undefined> {
+  if (to === null) return undefined
   if (userId && await isOff(tx, userId, kind)) return undefined
   const id = uuidv7()
   await tx.insert(letters).values({

@@ -5,13 +5,13 @@ import { db } from '../db/client'
 import { curves } from '../db/schema'
 import { hasRole, type StudioAccess } from './access'
 import { findBench, type BenchRow } from './benches'
-import { requirePhoto, type PhotoRow } from './photos'
+import { requireOwnPhoto, type PhotoRow } from './photos'
 import { starterBench } from './starter-benches'
 
 const notThere = (path: string, message: string) => new ComputeError('not_found', message, [{ path, message }])
 
 export async function photoForNegative(studio: StudioAccess, id: string): Promise<PhotoRow> {
-  const photo = await requirePhoto(studio, id)
+  const photo = await requireOwnPhoto(studio, id)
   if (photo.binnedAt) throw new ComputeError('wrong_state', 'This photo lies in the bin. Take it out, then make the negative.')
   return photo
 }

@@ -1,8 +1,8 @@
-import { and, eq, inArray, type SQL } from 'drizzle-orm'
+import { and, eq, inArray, isNotNull, or, type SQL } from 'drizzle-orm'
 import { ComputeError } from '#shared/errors'
 import { db, type Queryable } from '../db/client'
 import { benches, curves, films, inkjets, negatives, photos } from '../db/schema'
-import type { StudioAccess } from './access'
+import { hasRole, type StudioAccess } from './access'
 
 export type NegativeRow = typeof negatives.$inferSelect
 type CurveRow = typeof curves.$inferSelect
@@ -20,8 +20,10 @@ export interface NegativeParts {
   inUse: Pick<CurveRow, 'id' | 'version' | 'inUseSince'> | undefined
 }
 
-/** A negative shows its photo, so it is its maker's alone. */
-export const seenBy = (studio: StudioAccess) => and(eq(negatives.studioId, studio.id), eq(negatives.createdBy, studio.personId))
+/** A negative shows its photo, so it is its maker's alone, */
+export const ownedBy = (studio: StudioAccess) => and(eq(negatives.studioId, studio.id), eq(negatives.createdBy, studio.personId))
+/** but owners and technicians see it while it is handed in to a class. */
+const seenBy = (studio: StudioAccess) => hasRole(studio.role, 'technician') ? or(ownedBy(studio), and(eq(negatives.studioId, studio.id), isNotNull(negatives.handedInAt))) : ownedBy(studio)
 
 /** Reads negatives with their parts, each curve once: its table is large, and many negatives share it. */
 export async function readParts(where: SQL | undefined, order: SQL, limit: number, on: Queryable = db()): Promise<NegativeParts[]> {
@@ -39,9 +41,16 @@ export async function readParts(where: SQL | undefined, order: SQL, limit: numbe
   return rows.map(row => ({ ...row, curve: known.find(c => c.id === row.negative.curveId)!, inUse: inUse.find(c => c.benchId === row.bench.id) }))
 }
 
-/** One negative of this person; an archived one, or somebody else's, is not there. */
+/** One negative that this person may see; an archived one, or somebody else's, is not there. */
 export async function requireParts(studio: StudioAccess, id: string, on: Queryable = db()): Promise<NegativeParts> {
   const [parts] = await readParts(and(seenBy(studio), eq(negatives.id, id)), negatives.id.getSQL(), 1, on)
   if (!parts || parts.negative.archivedAt) throw new ComputeError('not_found', 'There is no such negative.')
+  return parts
+}
+
+/** The same for who changes it: to see it is not enough. */
+export async function requireOwnParts(studio: StudioAccess, id: string, on: Queryable = db()): Promise<NegativeParts> {
+  const parts = await requireParts(studio, id, on)
+  if (parts.negative.createdBy !== studio.personId) throw new ComputeError('role_too_low', 'This negative was handed in for you to look at and to print. It stays its student’s own.')
   return parts
 }

@@ -7,12 +7,13 @@ import { db, type Queryable } from '../db/client'
 import { negatives, type NegativeSettings } from '../db/schema'
 import type { StudioAccess } from './access'
 import { recordEvent } from './audit'
+import { hintBoardOf } from './class-hints'
 import { bodyHashOf, createOnce, idFor } from './creation'
 import { requireFilmFits } from './film-limits'
 import { filmOrder, filmSize, renderKey, resolveCrop } from './film-order'
 import { hint } from './hints'
 import { benchForNegative, chooseCurve, photoForNegative } from './negative-choices'
-import { readParts, requireParts, seenBy, type NegativeParts, type NegativeRow } from './negative-parts'
+import { ownedBy, readParts, requireOwnParts, requireParts, type NegativeParts, type NegativeRow } from './negative-parts'
 import { negativeWarnings } from './negative-warnings'
 import { keyset, toPage, type Page } from './paging'
 import { rendersByKey, showRender, type FilmRequest, type RenderRow } from './renders'
@@ -21,7 +22,7 @@ import { requireCurrent } from './revisions'
 export async function listNegatives(studio: StudioAccess, page: Page & { photoId?: string }) {
   const { after, order, take } = keyset(negatives.id, page)
   const ofPhoto = page.photoId ? eq(negatives.photoId, page.photoId) : undefined
-  const parts = await readParts(and(seenBy(studio), isNull(negatives.archivedAt), ofPhoto, after), order, take)
+  const parts = await readParts(and(ownedBy(studio), isNull(negatives.archivedAt), ofPhoto, after), order, take)
   const shown = new Map((await showAll(parts)).map(negative => [negative.id, negative]))
   return toPage(parts.map(p => p.negative), page, ({ id }) => shown.get(id)!)
 }
@@ -33,7 +34,7 @@ export async function createNegative(studio: StudioAccess, body: z.infer<typeof 
   const { id: _, photoId, benchId, process, curveId, name, aim, mirror, crop, ...settings } = body
   const id = idFor(body)
   const bodyHash = bodyHashOf(body)
-  const find = async () => (await db().select().from(negatives).where(and(seenBy(studio), eq(negatives.id, id))))[0]
+  const find = async () => (await db().select().from(negatives).where(and(ownedBy(studio), eq(negatives.id, id))))[0]
   const { created } = await createOnce(bodyHash, async () => {
     if (body.id && await find()) return undefined
     const photo = await photoForNegative(studio, photoId)
@@ -55,7 +56,7 @@ export async function createNegative(studio: StudioAccess, body: z.infer<typeof 
 /** What is left out stays. Another bench brings its own curve in use and its own mirroring, unless they are named too. */
 export async function changeNegative(studio: StudioAccess, id: string, patch: z.infer<typeof negativePatch>): Promise<Negative> {
   const { revision, name, benchId, curveId, aim, ...changes } = patch
-  const { negative, bench } = await requireParts(studio, id)
+  const { negative, bench } = await requireOwnParts(studio, id)
   requireCurrent(negative, revision)
   const movesTo = benchId !== undefined && benchId !== negative.benchId ? await benchForNegative(studio, { benchId }) : undefined
   const wantedCurve = curveId ?? (movesTo ? 'in-use' : undefined)
@@ -82,7 +83,7 @@ async function nextAim(studio: StudioAccess, negative: NegativeRow, asked: Aim |
 /** Put away: it is in no list any more. Its films stay in the cache until room is needed. */
 export async function archiveNegative(studio: StudioAccess, id: string): Promise<void> {
   await db().transaction(async (tx) => {
-    const { negative } = await requireParts(studio, id, tx)
+    const { negative } = await requireOwnParts(studio, id, tx)
     const [row] = await tx.update(negatives).set({ archivedAt: sql`now()`, revision: sql`${negatives.revision} + 1` })
       .where(and(eq(negatives.studioId, studio.id), eq(negatives.id, negative.id))).returning()
     await tell(tx, row!, 'archived')
@@ -91,8 +92,12 @@ export async function archiveNegative(studio: StudioAccess, id: string): Promise
 
 async function tell(on: Queryable, row: NegativeRow, verb: string): Promise<void> {
   await recordEvent(on, { studioId: row.studioId, userId: row.createdBy, kind: `negatives.${verb}`, recordId: row.id })
-  await hint(on, { studioId: row.studioId, topic: 'negatives', id: row.id, revision: row.revision, onlyFor: row.createdBy })
+  await tellNegative(on, row)
+  await hintBoardOf(on, row.studioId, row.createdBy)
 }
+
+export const tellNegative = (on: Queryable, row: NegativeRow): Promise<void> =>
+  hint(on, { studioId: row.studioId, topic: 'negatives', id: row.id, revision: row.revision, onlyFor: row.createdBy })
 
 /** What the worker is asked for when somebody wants this negative's film. */
 export function filmRequest(parts: NegativeParts, format: typeof filmFormats[number], requestId?: string): FilmRequest {
@@ -110,7 +115,7 @@ async function showAll(all: NegativeParts[]): Promise<Negative[]> {
 
 function shown(parts: NegativeParts, renders: RenderRow[]): Negative {
   const { negative, photo, bench, curve, inUse } = parts
-  const { studioId: _, bodyHash: __, settings, archivedAt: ___, createdAt, ...fields } = negative
+  const { studioId: _, bodyHash: __, settings, archivedAt: ___, handedInAt, createdAt, ...fields } = negative
   return {
     ...fields, ...settings,
     crop: resolveCrop(photo, settings),
@@ -120,6 +125,7 @@ function shown(parts: NegativeParts, renders: RenderRow[]): Negative {
     newerCurve: isNewer(inUse, curve) ? { id: inUse.id, version: inUse.version } : null,
     warnings: negativeWarnings(parts, renders.map(render => render.format)),
     renders: renders.map(showRender),
+    handedInAt: handedInAt?.toISOString() ?? null,
     createdAt: createdAt.toISOString(),
   }
 }

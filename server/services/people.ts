@@ -1,15 +1,16 @@
 import { randomBytes } from 'node:crypto'
-import { and, asc, eq, ne, sql } from 'drizzle-orm'
+import { and, asc, eq, inArray, isNull, ne, or, sql } from 'drizzle-orm'
 import { v7 as uuidv7 } from 'uuid'
 import type { z } from 'zod'
 import { ComputeError } from '#shared/errors'
 import type { loginBody, registerBody, Role, StudioMembership, User } from '#shared/schemas/people'
 import { readSettings } from '../config'
 import { db, type Queryable, type Transaction } from '../db/client'
-import { memberships, studios, users } from '../db/schema'
+import { classes, classStudents, memberships, studios, users } from '../db/schema'
 import { roleChangedLetter } from '../mail/letters'
 import { requireRole, type StudioAccess } from './access'
 import { recordEvent } from './audit'
+import { isPast, isStudent, showOwnClass } from './class-times'
 import { hint } from './hints'
 import { joinByInvitation } from './invitations'
 import { postLetter } from './letters'
@@ -69,13 +70,20 @@ export async function lastUsedStudio(userId: string): Promise<string | undefined
 }
 
 export async function studiosOf(userId: string): Promise<StudioMembership[]> {
-  return await db().select({ id: studios.id, slug: studios.slug, name: studios.name, role: memberships.role })
-    .from(memberships).innerJoin(studios, eq(studios.id, memberships.studioId)).where(eq(memberships.userId, userId)).orderBy(asc(memberships.createdAt), asc(studios.id))
+  const rows = await db().select({ id: studios.id, slug: studios.slug, name: studios.name, role: memberships.role, class: { id: classes.id, name: classes.name, endsAt: classes.endsAt } })
+    .from(memberships).innerJoin(studios, eq(studios.id, memberships.studioId))
+    .leftJoin(classStudents, and(eq(classStudents.studioId, studios.id), eq(classStudents.id, userId), isStudent))
+    .leftJoin(classes, and(eq(classes.studioId, classStudents.studioId), eq(classes.id, classStudents.classId)))
+    .where(and(eq(memberships.userId, userId), or(isNull(classes.id), sql`not ${isPast()}`))).orderBy(asc(memberships.createdAt), asc(studios.id))
+  return rows.map(({ class: ownClass, ...studio }) => ownClass ? { ...studio, class: showOwnClass(ownClass) } : studio)
 }
 
-export async function peopleOf(studioId: string): Promise<{ id: string, name: string, role: Role }[]> {
+/** Students stand on their class's board, and are not told of one another: they see who teaches, and themselves. */
+export async function peopleOf({ id: studioId, personId, student }: StudioAccess): Promise<{ id: string, name: string, role: Role }[]> {
+  const isNoStudent = sql`not exists (select 1 from class_students where class_students.id = ${users.id} and class_students.studio_id = ${studioId} and ${isStudent})`
   return await db().select({ id: users.id, name: users.name, role: memberships.role })
-    .from(memberships).innerJoin(users, eq(users.id, memberships.userId)).where(eq(memberships.studioId, studioId)).orderBy(asc(users.name), asc(users.id))
+    .from(memberships).innerJoin(users, eq(users.id, memberships.userId))
+    .where(and(eq(memberships.studioId, studioId), student ? or(inArray(memberships.role, ['technician', 'owner']), eq(users.id, personId)) : isNoStudent)).orderBy(asc(users.name), asc(users.id))
 }
 
 /** Opens a studio with this person as its owner. */
@@ -106,7 +114,8 @@ export function slugOf(name: string): string {
 export async function studioDetails(studioId: string): Promise<{ createdAt: string, eraseAfter: string | null, usage: { bytes: number, maxBytes: number } }> {
   const [row] = await db().select({
     createdAt: studios.createdAt, eraseAfter: studios.eraseAfter, maxBytes: studios.maxBytes,
-    bytes: sql<string>`(select coalesce(sum(bytes), 0) from photos where photos.studio_id = ${studios.id})`,
+    // Written out: drizzle leaves the outer table's name away where it selects from one table.
+    bytes: sql<string>`(select coalesce(sum(bytes), 0) from photos where photos.studio_id = studios.id)`,
   }).from(studios).where(eq(studios.id, studioId))
   return { createdAt: row!.createdAt.toISOString(), eraseAfter: row!.eraseAfter?.toISOString() ?? null, usage: { bytes: Number(row!.bytes), maxBytes: row!.maxBytes } }
 }
@@ -139,10 +148,12 @@ export async function removePerson(studio: StudioAccess, personId: string): Prom
 }
 
 /** Changes of a studio's people wait for one another at its row. */
-async function lockMember(tx: Transaction, studioId: string, personId: string): Promise<{ name: string, email: string, role: Role }> {
+async function lockMember(tx: Transaction, studioId: string, personId: string): Promise<{ name: string, email: string | null, role: Role }> {
   await tx.select({ id: studios.id }).from(studios).where(eq(studios.id, studioId)).for('no key update')
   const [member] = await tx.select({ name: users.name, email: users.email, role: memberships.role }).from(memberships)
     .innerJoin(users, eq(users.id, memberships.userId)).where(and(eq(memberships.studioId, studioId), eq(memberships.userId, personId)))
+  const [student] = await tx.select({ id: classStudents.id }).from(classStudents).where(and(eq(classStudents.studioId, studioId), eq(classStudents.id, personId), isStudent))
+  if (student) throw new ComputeError('wrong_state', 'Students of a class are looked after on its board, until they have an account of their own.')
   return requireFound(member)
 }
 

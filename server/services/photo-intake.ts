@@ -10,6 +10,7 @@ import type { PictureFacts } from '../image/protocol'
 import { storageKeys, type TemporaryFile } from '../storage'
 import type { StudioAccess } from './access'
 import { recordEvent } from './audit'
+import { hintBoardOf } from './class-hints'
 import { nameFromFileName } from './file-names'
 import { hint } from './hints'
 import { imageChild } from './image-child'
@@ -94,6 +95,7 @@ async function store(tx: Transaction, studio: StudioAccess, arrival: WholeArriva
   }).returning()
   await recordEvent(tx, { studioId: studio.id, userId: studio.personId, kind: 'photo.uploaded', recordId: arrival.id, details: { bytes: arrival.bytes } })
   await hint(tx, { studioId: studio.id, topic: 'photos', id: arrival.id, onlyFor: studio.personId })
+  await hintBoardOf(tx, studio.id, studio.personId)
   await made.thumbnail.keep(storageKeys.thumbnail(studio.id, arrival.id))
   // Empty where the picture is quick to decode.
   if ((await stat(made.working.path)).size > 0) await made.working.keep(storageKeys.working(studio.id, arrival.id))

@@ -4,7 +4,7 @@ import { ComputeError } from '#shared/errors'
 import { db } from '../db/client'
 import { rateLimits } from '../db/schema'
 
-/** At most `count` in a window of `seconds`, for each address, each account, or each account from one address. */
+/** At most `count` in a window of `seconds`, for each address, each account (or code), or each account from one address. */
 export const limitRules = {
   register: [{ by: 'address', count: 30, seconds: 3600 }],
   login: [
@@ -16,6 +16,11 @@ export const limitRules = {
   link: [{ by: 'address', count: 60, seconds: 900 }],
   password: [{ by: 'account', count: 10, seconds: 900 }],
   letters: [{ by: 'account', count: 60, seconds: 3600 }],
+  // A whole class behind one address looks and joins within minutes; a code's guesses: some 11 500 a day from one address against 18^8.
+  room: [{ by: 'address', count: 120, seconds: 900 }, { by: 'account', count: 300, seconds: 900 }],
+  return: [{ by: 'address', count: 60, seconds: 900 }, { by: 'account', count: 10, seconds: 900 }],
+  // Students are strangers: few letters to addresses that they type.
+  account: [{ by: 'address', count: 60, seconds: 3600 }, { by: 'account', count: 5, seconds: 3600 }],
 } as const satisfies Record<string, readonly { by: 'address' | 'account' | 'account-and-address', count: number, seconds: number }[]>
 export type LimitedAction = keyof typeof limitRules
 

@@ -9,7 +9,7 @@ import { postLetter } from './letters'
 import { requireFound } from './revisions'
 
 /** A letter to oneself: its state tells whether mail leaves this installation. */
-export async function postTestLetter(studio: StudioAccess, person: { id: string, email: string }): Promise<string> {
+export async function postTestLetter(studio: StudioAccess, person: { id: string, email: string | null }): Promise<string> {
   if (!mailIsConfigured()) throw new ComputeError('unavailable', 'No mail server is set up for this installation. Whoever runs it sets SMTP_URL.')
   const id = await db().transaction(tx => postLetter(tx, { kind: 'test', to: person.email, userId: person.id, studioId: studio.id, content: testLetter({ studioName: studio.name }) }))
   return id!

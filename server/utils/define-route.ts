@@ -5,7 +5,7 @@ import type { Endpoint } from '#shared/schemas/endpoint'
 import { ComputeError } from '#shared/errors'
 import { readSettings } from '../config'
 import type { Person, StudioAccess } from '../services/access'
-import { enterStudio } from '../services/access'
+import { enterStudio, requireAccount, requireOpenClass } from '../services/access'
 import { answerError } from './answer-error'
 import { refuseForeignOrigin } from './foreign-origin'
 import { bodyLimits, mediaType, readJson, readText } from './read-body'
@@ -15,7 +15,9 @@ type Parsed<S> = S extends z.ZodType ? z.output<S> : undefined
 type Field<E, K extends string> = E extends Record<K, infer S> ? Parsed<S> : undefined
 type InStudio<E extends Endpoint> = E['access'] extends 'member' | 'technician' | 'owner' ? StudioAccess : undefined
 type SessionPerson = Person & { session: NonNullable<Person['session']> }
-type SignedIn<E extends Endpoint> = E['access'] extends 'public' ? undefined : E['access'] extends 'fresh-session' ? SessionPerson : E extends { only: 'session' } ? SessionPerson : Person
+type WithAddress<E extends Endpoint> = E extends { account: true } ? { email: string } : unknown
+type SignedIn<E extends Endpoint> = Caller<E> & WithAddress<E>
+type Caller<E extends Endpoint> = E['access'] extends 'public' ? undefined : E['access'] extends 'fresh-session' ? SessionPerson : E extends { only: 'session' } ? SessionPerson : Person
 type Body<E extends Endpoint> = E extends { otherBodies: object } ? Field<E, 'body'> | undefined : Field<E, 'body'>
 
 export interface RouteContext<E extends Endpoint> {
@@ -54,14 +56,16 @@ export function defineRoute<const E extends Endpoint>(row: E, handle: (context: 
   })
 }
 
-async function admit(event: H3Event, { access, only, fresh }: Endpoint): Promise<{ person?: Person, studio?: StudioAccess }> {
+async function admit(event: H3Event, { method, access, only, fresh, account, afterClass }: Endpoint): Promise<{ person?: Person, studio?: StudioAccess }> {
   if (access === 'public') return {}
   const person = await requirePerson(event)
   if (only === 'session') requireSession(person)
   if (access === 'fresh-session') requireFreshSession(person)
+  if (account) requireAccount(person)
   if (access === 'session' || access === 'fresh-session') return { person }
   const studio = await enterStudio(person, getRouterParam(event, 'studio') ?? '', access)
   if (fresh) requireFreshSession(person) // after the studio: what one may not see says 404 first
+  if (!['GET', 'HEAD', 'OPTIONS'].includes(method) && !afterClass) requireOpenClass(studio)
   return { person, studio }
 }
 

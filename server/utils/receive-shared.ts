@@ -1,7 +1,7 @@
 import type { H3Event } from 'h3'
 import { getHeader } from 'h3'
 import { limits } from '#shared/schemas/limits'
-import { enterStudio } from '../services/access'
+import { enterStudio, requireOpenClass } from '../services/access'
 import { lastUsedStudio } from '../services/people'
 import { roomFor } from '../services/room'
 import { personOfSession } from '../services/sessions'
@@ -18,6 +18,7 @@ export async function receiveShared(event: H3Event): Promise<string> {
   const last = await lastUsedStudio(person.id)
   if (!last) return '/shared?why=no-studio'
   const studio = await enterStudio(person, last, 'member')
+  requireOpenClass(studio)
   const room = await roomFor(studio, Number(getHeader(event, 'content-length') ?? 0))
   const received = await receiveFiles(event, {
     field: 'file', maxFiles: limits.uploadMaxFiles, maxFileBytes: limits.fileMaxBytes, newId: newUploadId,

@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import { accountEndpoints } from './account'
 import { benchEndpoints } from './benches'
+import { classEndpoints } from './classes'
 import { comparisonEndpoints, scannerProfileEndpoints, tabletEndpoints, walkEndpoints } from './calibration'
 import { curveEndpoints } from './curves'
 import { endpoint, type Endpoint } from './endpoint'
@@ -22,5 +23,5 @@ const serviceEndpoints = {
 
 /** Every route of the service, by name. Validation, types and the OpenAPI document all come from here. */
 export const contract = {
-  ...serviceEndpoints, ...peopleEndpoints, ...accountEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints, ...tabletEndpoints, ...scannerProfileEndpoints, ...comparisonEndpoints, ...findingEndpoints, ...photoEndpoints, ...uploadEndpoints, ...negativeEndpoints, ...wedgeEndpoints,
+  ...serviceEndpoints, ...peopleEndpoints, ...accountEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints, ...tabletEndpoints, ...scannerProfileEndpoints, ...comparisonEndpoints, ...findingEndpoints, ...photoEndpoints, ...uploadEndpoints, ...negativeEndpoints, ...classEndpoints, ...wedgeEndpoints,
 } satisfies Record<string, Endpoint>

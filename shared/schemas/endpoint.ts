@@ -17,6 +17,10 @@ export interface Endpoint {
   only?: 'session'
   /** beside a role: a session whose person signed in within ten minutes */
   fresh?: true
+  /** takes an account with an address: not for students of a class */
+  account?: true
+  /** works for students whose class is over, though it is no GET: it makes nothing new of theirs */
+  afterClass?: true
   summary: string
   query?: z.ZodType
   /** JSON body */

@@ -3,6 +3,11 @@ export const limits = {
   nameLength: 120,
   /** one line of a record */
   lineLength: 200,
+  firstNameLength: 40,
+  /** in one class */
+  studentsMax: 200,
+  /** how far ahead a class may end */
+  classMaxDays: 400,
   textLength: 2000,
   emailLength: 254,
   passwordMinLength: 10,

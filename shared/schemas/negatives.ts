@@ -68,7 +68,9 @@ export const negative = z.object({
   curve: z.object({ id, version: z.number().int(), calibrated: z.boolean() }),
   /** a curve put in use since; offered, never applied by itself */
   newerCurve: z.object({ id, version: z.number().int() }).nullable(),
-  warnings: z.array(warning), renders: z.array(render), createdAt: instant, revision,
+  warnings: z.array(warning), renders: z.array(render),
+  /** since when a student’s teachers see it */
+  handedInAt: instant.nullable(), createdAt: instant, revision,
 })
 export type Negative = z.infer<typeof negative>
 
@@ -80,7 +82,7 @@ export const negativeEndpoints = {
   changeNegative: endpoint({ method: 'PATCH', path: `${root}/:negative`, access: 'member', summary: 'Change its settings.', body: negativePatch, answers: { 200: negative } }),
   archiveNegative: endpoint({ method: 'DELETE', path: `${root}/:negative`, access: 'member', summary: 'Put a negative away.', answers: { 204: null } }),
   negativeFile: endpoint({ method: 'GET', path: `${root}/:negative/file`, access: 'member', summary: 'The film file; 202 while it is being made. HEAD, Range, ETag.', query: z.strictObject({ format: filmFormat.default('pdf') }), answers: { 200: ['image/tiff', 'image/png', 'application/pdf'], 202: render, ...streamed(['image/tiff', 'image/png', 'application/pdf']) } }),
-  makeRender: endpoint({ method: 'POST', path: `${root}/:negative/renders`, access: 'member', summary: 'Have a film file made, or made again after it failed.', body: z.strictObject({ format: filmFormat }), answers: { 200: render, 202: render } }),
+  makeRender: endpoint({ method: 'POST', path: `${root}/:negative/renders`, access: 'member', afterClass: true, summary: 'Have a film file made, or made again after it failed.', body: z.strictObject({ format: filmFormat }), answers: { 200: render, 202: render } }),
   negativeForecast: endpoint({ method: 'GET', path: `${root}/:negative/forecast`, access: 'member', summary: 'The expected print as a picture.', query: z.strictObject({ width: z.coerce.number().int().min(16).max(2400).default(600), state: z.enum(['photo', 'film', 'print']).default('print') }), answers: { 200: ['image/png'], ...streamed(['image/png']) } }),
   negativePrintCard: endpoint({ method: 'GET', path: `${root}/:negative/print-card`, access: 'member', summary: 'What to check and set before printing this film.', query: z.strictObject({ format: filmFormat.default('pdf') }), answers: { 200: z.object({ title: z.string(), lines: z.array(z.object({ label: z.string(), text: z.string() })) }) } }),
 }

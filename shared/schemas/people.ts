@@ -10,8 +10,12 @@ export type Role = z.infer<typeof role>
 export const email = z.email('That is not an e-mail address.').max(limits.emailLength)
 export const newPassword = z.string().min(limits.passwordMinLength, `Use at least ${limits.passwordMinLength} characters.`).max(limits.passwordMaxLength)
 
-export const user = z.object({ id, name: z.string(), email: z.string() })
-export const studioMembership = z.object({ id, slug: z.string(), name: z.string(), role })
+/** `email` is null for students of a class, who joined with a first name alone. */
+export const user = z.object({ id, name: z.string(), email: z.string().nullable() })
+/** The class that one is a student of. Over: everything can be looked at and taken along, nothing changed. */
+export const ownClass = z.object({ id, name: z.string(), endsAt: instant, takeAlongUntil: instant, isOver: z.boolean() })
+export type OwnClass = z.infer<typeof ownClass>
+export const studioMembership = z.object({ id, slug: z.string(), name: z.string(), role, class: ownClass.optional() })
 export const studio = z.object({ id, slug: z.string(), name: z.string() })
 export type User = z.infer<typeof user>
 export type StudioMembership = z.infer<typeof studioMembership>
@@ -37,7 +41,7 @@ export const peopleEndpoints = {
   requestReset: endpoint({ method: 'POST', path: '/api/auth/reset-requests', access: 'public', summary: 'A letter with a link to set a new password, if the address has an account; the answer does not tell.', body: z.strictObject({ email: z.string().max(limits.emailLength) }), answers: { 202: null } }),
   resetPassword: endpoint({ method: 'POST', path: '/api/auth/resets', access: 'public', summary: 'Set a new password by the letter’s link; every session of before ends.', body: z.strictObject({ token: letterToken, password: newPassword }), answers: { 200: me } }),
   me: endpoint({ method: 'GET', path: '/api/me', access: 'session', summary: 'The signed-in person and their studios.', answers: { 200: me } }),
-  createStudio: endpoint({ method: 'POST', path: '/api/studios', access: 'session', summary: 'Open another studio, as its owner.', body: z.strictObject({ name }), answers: { 201: studioMembership } }),
+  createStudio: endpoint({ method: 'POST', path: '/api/studios', access: 'session', account: true, summary: 'Open another studio, as its owner.', body: z.strictObject({ name }), answers: { 201: studioMembership } }),
   studio: endpoint({ method: 'GET', path: '/api/studios/:studio', access: 'member', summary: 'One studio.', answers: { 200: studioMembership.extend({ createdAt: instant, eraseAfter: instant.nullable(), usage: z.object({ bytes: z.number(), maxBytes: z.number() }) }) } }),
   people: endpoint({ method: 'GET', path: '/api/studios/:studio/people', access: 'member', summary: 'The studio’s people and roles.', answers: { 200: z.object({ items: z.array(z.object({ id, name: z.string(), role })) }) } }),
   changePerson: endpoint({ method: 'PATCH', path: person, access: 'owner', summary: 'Change somebody’s role; the last owner stays one.', body: z.strictObject({ role }), answers: { 200: z.object({ id, name: z.string(), role }) } }),
@@ -46,7 +50,7 @@ export const peopleEndpoints = {
   invite: endpoint({ method: 'POST', path: invitations, access: 'owner', summary: 'Invite somebody by letter.', body: invitationBody, answers: { 200: invitation, 201: invitation } }),
   revokeInvitation: endpoint({ method: 'DELETE', path: `${invitations}/:invitation`, access: 'owner', summary: 'Take an invitation back.', answers: { 204: null } }),
   lookAtInvitation: endpoint({ method: 'POST', path: '/api/invitations/look', access: 'public', summary: 'What an invitation offers, for the page that its link opens.', body: z.strictObject({ token: letterToken }), answers: { 200: z.object({ studioName: z.string(), role, invitedBy: z.string(), email: z.string(), hasAccount: z.boolean() }) } }),
-  acceptInvitation: endpoint({ method: 'POST', path: '/api/invitations/accept', access: 'session', summary: 'Join the studio.', body: z.strictObject({ token: letterToken }), answers: { 200: studioMembership } }),
+  acceptInvitation: endpoint({ method: 'POST', path: '/api/invitations/accept', access: 'session', account: true, summary: 'Join the studio.', body: z.strictObject({ token: letterToken }), answers: { 200: studioMembership } }),
   sendTestLetter: endpoint({ method: 'POST', path: '/api/studios/:studio/test-letters', access: 'owner', summary: 'A letter to oneself, to see whether mail works.', answers: { 202: z.object({ id }) } }),
   testLetter: endpoint({ method: 'GET', path: '/api/studios/:studio/test-letters/:letter', access: 'owner', summary: 'How far a test letter has come.', answers: { 200: z.object({ id, state: z.enum(['waiting', 'sending', 'sent', 'failed']), attempts: z.number().int(), lastError: z.string().nullable() }) } }),
   eraseStudio: endpoint({ method: 'POST', path: '/api/studios/:studio/erasure', access: 'owner', fresh: true, summary: 'Erase the studio after a time of grace.', body: z.strictObject({ name: z.string() }), answers: { 200: z.object({ eraseAfter: instant }) } }),

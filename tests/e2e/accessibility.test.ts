@@ -4,17 +4,23 @@ import { readFile } from 'node:fs/promises'
 import type { Page } from 'playwright-core'
 import { beforeAll, describe, expect, it } from 'vitest'
 import { desk, newPage, phone, photograph, useBrowser } from '../support/browser'
+import { newClass, newStudent } from '../support/classes'
 import { newStudio } from '../support/studio'
 
 useBrowser()
 
-interface Records { slug: string, photo: string, negative: string, bench: string, wedge: string, reading: string, scanner: string, sensitizer: string }
+interface Records { slug: string, photo: string, negative: string, bench: string, wedge: string, reading: string, scanner: string, sensitizer: string, class: string }
 
 /** Every screen, by its page file: where it is, and what is there once it stands. */
 const screens: Record<string, { path: (r: Records) => string, stands: string, isPublic?: boolean }> = {
   'pages/index.vue': { path: () => '/', stands: 'h1', isPublic: true },
   'pages/shared.vue': { path: () => '/shared?why=sign-in', stands: 'h1', isPublic: true },
   'pages/open-studio.vue': { path: () => '/open-studio', stands: 'h1', isPublic: true },
+  'pages/join.vue': { path: () => '/join', stands: 'h1', isPublic: true },
+  'pages/s/[studio]/take-along.vue': { path: r => `/s/${r.slug}/take-along`, stands: 'h1' },
+  'pages/s/[studio]/classes/index.vue': { path: r => `/s/${r.slug}/classes`, stands: '.ruled' },
+  'pages/s/[studio]/classes/[class]/index.vue': { path: r => `/s/${r.slug}/classes/${r.class}`, stands: '.student' },
+  'pages/s/[studio]/classes/[class]/code.vue': { path: r => `/s/${r.slug}/classes/${r.class}/code`, stands: 'svg path' },
   'pages/s/[studio]/index.vue': { path: r => `/s/${r.slug}`, stands: 'h1' },
   'pages/s/[studio]/negatives/[negative].vue': { path: r => `/s/${r.slug}/negatives/${r.negative}`, stands: '.captions' },
   'pages/s/[studio]/photos/index.vue': { path: r => `/s/${r.slug}/photos`, stands: 'h1' },
@@ -56,7 +62,9 @@ async function newRecords() {
   const reading = (await agent.post(`${root}/benches/${bench.id}/readings`, { unit: 'lightness', values: Array.from({ length: 21 }, (_, i) => ({ level: i / 20, value: 22 + 3.6 * i })) })).body
   const scanner = (await agent.post(`${root}/scanners`, { name: 'Flatbed by the window' })).body
   const sensitizer = (await agent.post(`${root}/sensitizers`, { name: 'Two parts', facts: { process: 'cyanotype', parts: [{ name: 'A', madeOn: '2026-03-02', substances: [{ substance: 'Ferric ammonium citrate', amount: '25 g' }] }] } })).body
-  return { agent, records: { slug: studio.slug, photo: photo.id, negative: negative.id, bench: bench.id, wedge: wedge.id, reading: reading.id, scanner: scanner.id, sensitizer: sensitizer.id } as Records }
+  const open = await newClass({ agent, root })
+  await newStudent(open)
+  return { agent, records: { slug: studio.slug, photo: photo.id, negative: negative.id, bench: bench.id, wedge: wedge.id, reading: reading.id, scanner: scanner.id, sensitizer: sensitizer.id, class: open.id } as Records }
 }
 
 describe('accessibility', () => {

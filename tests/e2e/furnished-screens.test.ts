@@ -3,6 +3,7 @@ import { readFileSync } from 'node:fs'
 import type { Page } from 'playwright-core'
 import { beforeAll, describe, expect, it, vi } from 'vitest'
 import { newPage, phone, photograph, useBrowser } from '../support/browser'
+import { newClass, newStudent } from '../support/classes'
 import { newStudio } from '../support/studio'
 import { chartOfRecord, printOfChart, scanFile, scanForm, scanOf } from '../support/wedge-scans'
 
@@ -43,6 +44,9 @@ const screens: Record<string, Screen> = {
   } },
   'the shelf': { path: () => 'shelf', then: page => page.getByText('On one bench').waitFor() },
   'a record of the shelf being changed, all of it open': { path: made => `shelf/papers/${made.paper}/change`, then: page => page.evaluate(() => document.querySelectorAll('details').forEach(folded => folded.open = true)) },
+  'classes': { path: () => 'classes', then: page => page.getByText('Blue afternoon').waitFor() },
+  'a class with a student, their menu open': { path: made => `classes/${made.class}`, then: page => page.getByRole('button', { name: 'More for Mika' }).click() },
+  'a class’s code on the wall': { path: made => `classes/${made.class}/code`, then: page => page.locator('svg path').first().waitFor() },
 }
 
 /** Derived: a print that falls evenly with exposure and then stays at its black. */
@@ -72,9 +76,11 @@ async function furnish() {
   await agent.post(`${root}/benches/${bench.id}/tablets`, { values: Array.from({ length: 21 }, (_, i) => ({ density: 0.05 + 0.15 * i, lightness: 22 + 73 / (1 + Math.exp(-(i - 8) / 1.5)) })) })
   const scanner = (await agent.post(`${root}/scanners`, { name: 'Flatbed by the window' })).body
   await agent.post(`${root}/scanner-profiles/${scanner.id}`, { process: 'cyanotype', kind: 'grey-scale', points: Array.from({ length: 9 }, (_, i) => ({ scanned: 20 + 9 * i, measured: 15 + 9.6 * i })) })
+  const open = await newClass({ agent, root })
+  await newStudent(open)
   const starter = (await agent.post(`${root}/starter-benches`, { process: 'cyanotype' })).body
   await agent.post(`${root}/negatives`, { photoId: photo.id, benchId: bench.id, size: { widthMm: 100, heightMm: 100 } })
-  return { agent, slug: studio.slug as string, photo: photo.id as string, bench: bench.id as string, paper: paper.id as string, wedge: wedge.id as string, scan: scan.id as string, second: second.id as string, scanner: scanner.id as string, starter: starter.id as string }
+  return { agent, slug: studio.slug as string, photo: photo.id as string, bench: bench.id as string, paper: paper.id as string, wedge: wedge.id as string, scan: scan.id as string, second: second.id as string, scanner: scanner.id as string, starter: starter.id as string, class: open.id }
 }
 
 /** Counts the pixels of the screen that hold blue light. */

@@ -5,6 +5,7 @@ import { describe, expect, it, onTestFinished } from 'vitest'
 import { builtPrograms } from '../../server/cli/paths.mjs'
 import { startWeb } from '../support/application'
 import { connect, newDatabase, newFolder } from '../support/house'
+import { newClass } from '../support/classes'
 import { Agent, newStudio } from '../support/studio'
 
 /** Web with settings of this test's own. */
@@ -38,6 +39,31 @@ describe('sign-in', () => {
     const { rows } = await database.query('select key, sum(count)::int as count from rate_limits where key like \'login:address:%\' group by key')
     expect(rows).toMatchObject([{ count: 2 }])
     expect(JSON.stringify(rows)).not.toContain('127.0.0.1')
+  })
+})
+
+describe('room codes', () => {
+  it('are tried 120 times a quarter of an hour from one address, whether right or wrong', async () => {
+    const { web } = await ownWeb({ RATE_LIMITS: 'true', TRUSTED_PROXIES: '127.0.0.1' })
+    const { roomCode } = await newClass(await newStudio('Rope Works Studio', web.address))
+    const look = (code: string, from: string) => new Agent(web.address).post('/api/join/look', { roomCode: code }, { headers: { 'x-forwarded-for': from } })
+    // A window may end in between: then the count begins again, and up to 241 are let through.
+    const statuses = []
+    for (let i = 0; i < 241 && statuses.at(-1) !== 429; i++) statuses.push((await look('CFHJKMNP', '192.0.2.9')).status)
+    expect(statuses.slice(0, 120)).toEqual(Array(120).fill(410))
+    expect(statuses).toContain(429)
+    expect((await look(roomCode, '192.0.2.9')).status).toBe(429)
+    expect((await look(roomCode, '192.0.2.10')).status).toBe(200)
+  })
+
+  it('and personal codes are, ten times each and sixty times from one address', async () => {
+    const { web } = await ownWeb({ RATE_LIMITS: 'true', TRUSTED_PROXIES: '127.0.0.1' })
+    const attempt = (personalCode: string) => new Agent(web.address).post('/api/join/return', { personalCode }, { headers: { 'x-forwarded-for': '192.0.2.9' } })
+    const statuses = []
+    for (let i = 0; i < 21; i++) statuses.push((await attempt('CFHJKMNPRTWX')).status)
+    expect(statuses.slice(0, 10)).toEqual(Array(10).fill(410))
+    expect(statuses).toContain(429)
+    expect((await attempt('CFHJKMNPRTWW')).status).toBe(410)
   })
 })
 

@@ -1,6 +1,7 @@
 import { accountCases } from './routes/account'
 import { benchCases } from './routes/benches'
 import { calibrationCases } from './routes/calibration'
+import { classCases } from './routes/classes'
 import { curveCases } from './routes/curves'
 import { negativeCases } from './routes/negatives'
 import { peopleCases } from './routes/people'
@@ -14,4 +15,4 @@ import { walkCases } from './routes/walk'
 import { wedgeCases } from './routes/wedges'
 
 /** Every handler of the service, each with a good call of it. What must be refused follows from the contract, or is named. */
-export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...accountCases, ...shelfCases, ...benchCases, ...curveCases, ...calibrationCases, ...scanCases, ...walkCases, ...photoCases, ...uploadCases, ...negativeCases, ...wedgeCases]
+export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...accountCases, ...shelfCases, ...benchCases, ...curveCases, ...calibrationCases, ...scanCases, ...walkCases, ...photoCases, ...uploadCases, ...negativeCases, ...classCases, ...wedgeCases]

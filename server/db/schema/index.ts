@@ -1,5 +1,6 @@
 export * from './people'
 export * from './letters'
+export * from './classes'
 export * from './shelf'
 export * from './scanner-profiles'
 export * from './benches'

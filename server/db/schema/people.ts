@@ -7,7 +7,8 @@ import { createdAt, instant, revision } from './columns'
 export const users = pgTable('users', {
   id: uuid().primaryKey(),
   name: varchar({ length: limits.nameLength }).notNull(),
-  email: varchar({ length: limits.emailLength }).notNull(),
+  /** null for students of a class, who joined with a first name alone */
+  email: varchar({ length: limits.emailLength }),
   passwordHash: text(),
   /** kinds of letters that this person does not want */
   lettersOff: jsonb().$type<LetterKind[]>().notNull().default([]),

@@ -64,6 +64,8 @@ export const negatives = pgTable('negatives', {
   bodyHash: varchar({ length: 64 }).notNull(),
   createdBy: uuid().notNull().references(() => users.id),
   archivedAt: instant(),
+  /** since when a student's class shows it to the studio's owners and technicians */
+  handedInAt: instant(),
   createdAt: createdAt(),
   revision: revision(),
 }, t => [

@@ -1,4 +1,4 @@
-import { peopleEndpoints } from '#shared/schemas/people'
+import { peopleEndpoints, type Role } from '#shared/schemas/people'
 import { readSettings } from '../../../config'
 import { enterStudio } from '../../../services/access'
 import { joinHints } from '../../../services/hint-hub'
@@ -10,8 +10,8 @@ const aliveSeconds = 25
 export default defineRoute(peopleEndpoints.events, async ({ event, person, studio }) => {
   const stream = createEventStream(event)
   const leave = joinHints({
-    studioId: studio.id, personId: person.id,
-    mayListen: () => mayStillEnter(event, studio.id),
+    studioId: studio.id, personId: person.id, role: studio.role,
+    mayListen: () => roleNow(event, studio.id),
     resync: () => void stream.push({ event: 'resync', data: '{}' }),
     send: hint => void stream.push(JSON.stringify(hint)),
     end: () => void stream.close(),
@@ -26,14 +26,13 @@ export default defineRoute(peopleEndpoints.events, async ({ event, person, studi
   await stream.send()
 })
 
-/** False once the session, the token or the membership has ended; throws when that can't be told. */
-async function mayStillEnter(event: H3Event, studioId: string): Promise<boolean> {
+/** None once the session, the token or the membership has ended; throws when that can't be told. */
+async function roleNow(event: H3Event, studioId: string): Promise<Role | undefined> {
   try {
-    await enterStudio(await requirePerson(event), studioId, 'member')
-    return true
+    return (await enterStudio(await requirePerson(event), studioId, 'member')).role
   }
   catch (error) {
-    if (error instanceof ComputeError) return false
+    if (error instanceof ComputeError) return undefined
     throw error
   }
 }

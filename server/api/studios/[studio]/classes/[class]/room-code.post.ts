@@ -1,0 +1,4 @@
+import { classEndpoints } from '#shared/schemas/classes'
+import { renewRoomCode } from '../../../../../services/classes'
+
+export default defineRoute(classEndpoints.renewRoomCode, ({ studio, idParam }) => renewRoomCode(studio, idParam('class')))
