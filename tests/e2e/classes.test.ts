@@ -38,7 +38,8 @@ describe('a class', () => {
     await student.page.getByRole('button', { name: /^Take back/ }).waitFor()
     await row.getByText('Handed in').waitFor()
     const pictures = teacher.page.locator('.pieces img')
-    await expect.poll(() => pictures.evaluateAll(all => all.filter(img => (img as HTMLImageElement).naturalWidth > 0).length)).toBe(3)
+    await teacher.page.locator('.pieces').scrollIntoViewIfNeeded() // they are loaded once they come into sight
+    await expect.poll(() => pictures.evaluateAll(all => all.filter(img => (img as HTMLImageElement).naturalWidth > 0).length), { timeout: 30_000 }).toBe(3)
     expect(await student.page.evaluate(() => document.documentElement.scrollWidth)).toBe(phone.width)
 
     const second = await newPage({ size: phone })
