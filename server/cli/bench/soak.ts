@@ -91,6 +91,7 @@ function filesBelow(folder: string): string[] {
 
 /** Bombs one after the other, while somebody else looks at photos and web's memory is watched. */
 async function* hostile(service: RunningService, heic: Buffer): AsyncIterable<Measure> {
+  const all = bombs(heic)
   const [attacker, other] = [await signedIn(service.address), await signedIn(service.address)]
   const before = memoryMb(service.webPid)
   let [going, peak] = [true, before]
@@ -115,7 +116,7 @@ async function* hostile(service: RunningService, heic: Buffer): AsyncIterable<Me
     wrong++
     process.stderr.write(`${name}: ${status} ${text.slice(0, 300)}\n`)
   }
-  for (const { name, bytes, code } of bombs(heic)) {
+  for (const { name, bytes, code } of all) {
     const started = performance.now()
     look(name, await sent(attacker, `${name}.jpg`, bytes), code, started)
   }

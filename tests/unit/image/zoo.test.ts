@@ -78,10 +78,12 @@ describe('made files are read as ImageMagick reads them', () => {
   it.each([1, 2, 3, 4, 5, 6, 7, 8])('a JPEG, TIFF and WebP of orientation %i', async (orientation) => {
     const upright = sharp(scene).withMetadata({ orientation })
     await compare(`orientation-${orientation}.jpg`, bench.keep(await upright.clone().jpeg({ quality: 95, chromaSubsampling: '4:4:4' }).toBuffer(), 'o.jpg'), magickLightness, exact)
-    await compare(`orientation-${orientation}.tif`, bench.keep(await upright.clone().tiff({ compression: 'lzw' }).toBuffer(), 'o.tif'), magickLightness, exact)
-    // ImageMagick 6 doesn't turn WebP: the reference is the turned JPEG's TIFF.
-    const webp = bench.keep(await upright.clone().webp({ lossless: true }).toBuffer(), 'o.webp')
-    await compare(`orientation-${orientation}.webp`, webp, () => magickLightness(bench.keep(readFileSync(made(`t${orientation}.tif`, '-orient', ['TopLeft', 'TopRight', 'BottomRight', 'BottomLeft', 'LeftTop', 'RightTop', 'RightBottom', 'LeftBottom'][orientation - 1]!)), 't.tif')), exact)
+    // The others keep the tag elsewhere; what it then means is the same.
+    if (![2, 6, 7].includes(orientation)) return
+    const tiff = bench.keep(await upright.clone().tiff({ compression: 'lzw' }).toBuffer(), 'o.tif')
+    await compare(`orientation-${orientation}.tif`, tiff, magickLightness, exact)
+    // ImageMagick 6 doesn't turn WebP: the reference is the turned TIFF.
+    await compare(`orientation-${orientation}.webp`, bench.keep(await upright.clone().webp({ lossless: true }).toBuffer(), 'o.webp'), () => magickLightness(tiff), exact)
   })
 
   it.each([
@@ -169,10 +171,10 @@ const wide = () => made('wide.png', '-resize', '192x128!', ...asP3)
 describe('HEIC and AVIF are read as heif-convert reads them', () => {
   it.each([
     // Full chroma leaves nothing to choose; smaller chroma is stretched by other rules, which shows at coloured edges.
-    ['full.heic', ['-p', 'chroma=444'], undefined, { max: 1, mean: 0.15 }], ['half.heic', [], undefined, { max: 6, mean: 0.4 }],
-    ['full.avif', ['-p', 'chroma=444'], undefined, { max: 1, mean: 0.15 }], ['half.avif', [], undefined, { max: 6, mean: 0.4 }],
-    ['deep.heic', ['-b', '10', '-p', 'chroma=444'], () => deep(), { max: 1, mean: 0.15 }],
-    ['profile.heic', ['-p', 'chroma=444'], wide, { max: 1, mean: 0.15 }], ['profile.avif', ['-p', 'chroma=444'], wide, { max: 1, mean: 0.15 }],
+    ['full.heic', ['-p', 'chroma=444'], undefined, { max: 0.4, mean: 0.1 }], ['half.heic', [], undefined, { max: 1, mean: 0.05 }],
+    ['full.avif', ['-p', 'chroma=444'], undefined, { max: 0.4, mean: 0.1 }], ['half.avif', [], undefined, { max: 1, mean: 0.05 }],
+    ['deep.heic', ['-b', '10', '-p', 'chroma=444'], () => deep(), { max: 0.4, mean: 0.1 }],
+    ['profile.heic', ['-p', 'chroma=444'], wide, { max: 0.4, mean: 0.1 }], ['profile.avif', ['-p', 'chroma=444'], wide, { max: 0.4, mean: 0.1 }],
   ] as const)('%s', async (name, options, source, tolerance) => {
     await compare(name, encoded(name, [...options], source?.()), heifConvertLightness, tolerance)
   })
@@ -180,13 +182,13 @@ describe('HEIC and AVIF are read as heif-convert reads them', () => {
   it('AVIF of 10 bits', async () => {
     const path = bench.keep(await sharp(deep()).toColourspace('rgb16').avif({ bitdepth: 10, quality: 92, chromaSubsampling: '4:4:4' }).toBuffer(), 'deep.avif')
     expect(await probePicture({ path })).toMatchObject({ bitDepth: 16 })
-    await compare('deep.avif', path, heifConvertLightness, { max: 1, mean: 0.15 })
+    await compare('deep.avif', path, heifConvertLightness, { max: 0.4, mean: 0.1 })
   })
 
   it.each(['numbers.heic', 'numbers.avif'])('%s: colours given by numbers as those of Display P3', async (name) => {
     const path = bench.keep(heifFile({ tile: codedPictureOf(readFileSync(encoded(name, ['-p', 'chroma=444']))), codePoints: [12, 13] }), name)
     expect(await probePicture({ path })).toMatchObject({ colourProfile: 'Display P3' })
-    await compare(name, path, file => heifConvertLightness(file, p3), { max: 1, mean: 0.15 })
+    await compare(name, path, file => heifConvertLightness(file, p3), { max: 0.4, mean: 0.1 })
   })
 
   it('grids of tiles, turned and mirrored by their properties; Exif’s orientation is not asked', async () => {
@@ -200,7 +202,7 @@ describe('HEIC and AVIF are read as heif-convert reads them', () => {
     ] as const) {
       const path = bench.keep(bytes, name)
       expect(await probePicture({ path })).toMatchObject({ width: sides[0], height: sides[1], orientation: 1 })
-      await compare(name, path, heifConvertLightness, { max: 1, mean: 0.15 })
+      await compare(name, path, heifConvertLightness, { max: 0.4, mean: 0.1 })
     }
   })
 
