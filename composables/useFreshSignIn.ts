@@ -2,11 +2,12 @@ import { contract } from '#build/client-contract'
 
 /**
  * For what asks for a sign-in of the last ten minutes: `attempt` runs the work; where the service wants a fresh one,
- * the password, or a student's personal code, is asked for (`SignInAgainDialog`) and the work done again.
+ * the person is asked who they are (`SignInAgainDialog`) and the work done again.
  */
 export function useFreshSignIn() {
   const { call } = useApi()
   const session = useSessionStore()
+  const passkeys = usePasskeys()
   const isAsking = ref(false)
   const problem = ref<string | null>(null)
   const isBusy = ref(false)
@@ -32,14 +33,16 @@ export function useFreshSignIn() {
     }
   }
 
-  const again = (secret: string) => attempt(async () => {
-    if (session.user?.email) await call(contract.signInAgain, { body: { password: secret } })
-    else await session.returnToClass(secret)
+  const after = (proof: () => Promise<unknown>) => attempt(async () => {
+    await proof()
     const work = waiting
     waiting = null
     isAsking.value = false
     await work?.()
   })
+  /** By the password, or a student's personal code. */
+  const again = (secret: string) => after(() => session.user?.email ? call(contract.signInAgain, { body: { password: secret } }) : session.returnToClass(secret))
+  const againByPasskey = () => after(passkeys.signInAgain)
 
-  return { attempt, again, isAsking, problem, isBusy }
+  return { attempt, again, againByPasskey, isAsking, problem, isBusy }
 }

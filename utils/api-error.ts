@@ -4,7 +4,7 @@ interface ErrorBody { message?: string, data?: { code?: ErrorCode, issues?: Issu
 
 /** What went wrong in a request: a stable code and a sentence that a person can act on. */
 export class ApiError extends Error {
-  constructor(readonly status: number, readonly code: ErrorCode | 'unreachable', message: string, readonly issues: Issue[] = []) {
+  constructor(readonly status: number, readonly code: ErrorCode | 'unreachable' | 'passkey_not_used', message: string, readonly issues: Issue[] = []) {
     super(message)
     this.name = 'ApiError'
   }

@@ -33,7 +33,7 @@ export const startWorker = (programs: ServicePrograms, env: NodeJS.ProcessEnv, l
 export async function startWeb(programs: ServicePrograms, env: NodeJS.ProcessEnv, logFolder: string): Promise<ServiceProcess & { address: string }> {
   const port = await freePort()
   const address = `http://127.0.0.1:${port}`
-  const web = start(programs.web, { ...env, HOST: '127.0.0.1', PORT: String(port), NUXT_PUBLIC_URL: address }, join(logFolder, 'web.log'))
+  const web = start(programs.web, { ...env, HOST: '127.0.0.1', PORT: String(port) }, join(logFolder, 'web.log'))
   const deadline = Date.now() + 60_000
   while (!(await fetch(`${address}/api/health/ready`).catch(() => undefined))?.ok) {
     if (web.child.exitCode !== null || Date.now() > deadline) {

@@ -39,6 +39,18 @@ export const passwordChangedLetter = (): LetterContent => ({
   footer: 'If this was not you, ask for a new password on the sign-in page at once.',
 })
 
+export const passkeyAddedLetter = ({ name }: { name: string }): LetterContent => ({
+  subject: 'A passkey was added to your account',
+  paragraphs: [`The passkey “${name}” was added to your Emulside account just now. Whoever holds it can sign in.`],
+  footer: 'If this was not you, sign in, remove the passkey in your account, and set a new password at once.',
+})
+
+export const passkeyRemovedLetter = ({ name }: { name: string }): LetterContent => ({
+  subject: 'A passkey was removed from your account',
+  paragraphs: [`The passkey “${name}” was removed from your Emulside account just now, and no longer signs in.`],
+  footer: 'If this was not you, sign in and set a new password at once.',
+})
+
 export const accountErasureLetter = ({ on, url }: { on: string, url: string }): LetterContent => ({
   subject: 'Your account will be erased',
   paragraphs: [`Your account, your photos and your negatives will be erased on ${on}. Until then you can sign in and keep them.`],

@@ -12,6 +12,9 @@ export const limits = {
   emailLength: 254,
   passwordMinLength: 10,
   passwordMaxLength: 200,
+  passkeysPerPerson: 20,
+  /** characters of a credential's id, base64url: 1023 bytes at most (WebAuthn Level 2, 4) */
+  credentialIdLength: 1364,
   /** mm; the least and the greatest side of a print or a page */
   sideMinMm: 5,
   sideMaxMm: 1500,

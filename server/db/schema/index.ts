@@ -1,4 +1,5 @@
 export * from './people'
+export * from './ways-in'
 export * from './letters'
 export * from './classes'
 export * from './shelf'
