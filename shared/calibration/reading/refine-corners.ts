@@ -32,8 +32,7 @@ export function refineCorners(sample: Sampler, corners: Quadrilateral, reachModu
   })
   if (lines.some(line => line === null)) return null
   const refined = lines.map((line, i) => intersection(lines[(i + 3) % 4]!, line!))
-  widths.sort((a, b) => a - b)
-  return { corners: refined as unknown as Quadrilateral, edgeWidthPx: widths[widths.length >> 1]! }
+  return { corners: refined as unknown as Quadrilateral, edgeWidthPx: medianOf(widths) }
 }
 
 const centroid = (corners: Quadrilateral): Point =>
@@ -77,14 +76,32 @@ function meanProfile(sample: Sampler, centre: Point, along: Point, across: Point
 /** A line n·p = c with |n| = 1. */
 type Line = readonly [number, number, number]
 
-/** Total least squares line, then again without points further than 2.5 times the median distance. */
+/** A point counts as on the line within this many robust standard deviations, and in any case within the least distance, pixels. */
+const [keptDeviations, keptPx] = [2.5, 0.05]
+/** Median absolute deviation of a normal distribution to its standard deviation: 1 / Φ⁻¹(3/4). */
+const madToDeviation = 1 / 0.674489750196082
+
+/**
+ * Least median of squares (Rousseeuw 1984) over all lines through two points, then total least squares of what lies on the best:
+ * a hair or a scratch along nearly half of an edge doesn't draw the line to itself.
+ */
 function fitLine(points: Point[]): Line {
-  const first = principalLine(points)
-  const distances = points.map(([x, y]) => Math.abs(first[0] * x + first[1] * y - first[2]))
-  const limit = 2.5 * Math.max([...distances].sort((a, b) => a - b)[points.length >> 1]!, 0.02)
+  let [best, least] = [principalLine(points), Infinity]
+  for (let i = 0; i < points.length; i++) {
+    for (let j = i + 1; j < points.length; j++) {
+      const line = principalLine([points[i]!, points[j]!])
+      const median = medianOf(distancesTo(line, points))
+      if (median < least) [best, least] = [line, median]
+    }
+  }
+  const limit = Math.max(keptDeviations * madToDeviation * least, keptPx)
+  const distances = distancesTo(best, points)
   const kept = points.filter((_, i) => distances[i]! <= limit)
-  return kept.length >= 4 ? principalLine(kept) : first
+  return principalLine(kept)
 }
+
+const distancesTo = ([a, b, c]: Line, points: Point[]): number[] => points.map(([x, y]) => Math.abs(a * x + b * y - c))
+const medianOf = (values: number[]): number => [...values].sort((a, b) => a - b)[values.length >> 1]!
 
 function principalLine(points: Point[]): Line {
   const n = points.length
