@@ -57,6 +57,11 @@ export async function askAccountErasure(person: { id: string, email: string | nu
   })
 }
 
+export async function erasureOf(userId: string): Promise<{ eraseAfter: string | null, graceDays: number }> {
+  const [row] = await db().select({ eraseAfter: users.eraseAfter }).from(users).where(eq(users.id, userId))
+  return { eraseAfter: row!.eraseAfter?.toISOString() ?? null, graceDays: readSettings().ERASURE_GRACE_DAYS }
+}
+
 export async function keepAccount(userId: string): Promise<void> {
   await db().transaction(async (tx) => {
     await tx.update(users).set({ eraseAfter: null }).where(eq(users.id, userId))

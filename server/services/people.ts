@@ -3,7 +3,7 @@ import { and, asc, eq, inArray, isNull, ne, or, sql } from 'drizzle-orm'
 import { v7 as uuidv7 } from 'uuid'
 import type { z } from 'zod'
 import { ComputeError } from '#shared/errors'
-import type { loginBody, registerBody, Role, StudioMembership, User } from '#shared/schemas/people'
+import type { loginBody, registerBody, Role, StudioDetails, StudioMembership, User } from '#shared/schemas/people'
 import { readSettings } from '../config'
 import { db, type Queryable, type Transaction } from '../db/client'
 import { classes, classStudents, memberships, studios, users } from '../db/schema'
@@ -15,7 +15,7 @@ import { hint } from './hints'
 import { joinByInvitation } from './invitations'
 import { postLetter } from './letters'
 import { hashPassword, passwordMatches } from './passwords'
-import { requireFound } from './revisions'
+import { requireCurrent, requireFound } from './revisions'
 import { openSession, revokeSession, revokeSessionsOf } from './sessions'
 
 export interface SignedIn { sessionId: string, user: User }
@@ -110,14 +110,29 @@ export function slugOf(name: string): string {
   return slug || 'studio'
 }
 
-/** How many bytes the studio's originals take up. */
-export async function studioDetails(studioId: string): Promise<{ createdAt: string, eraseAfter: string | null, usage: { bytes: number, maxBytes: number } }> {
+export async function studioDetailsOf(studio: StudioAccess): Promise<StudioDetails> {
   const [row] = await db().select({
-    createdAt: studios.createdAt, eraseAfter: studios.eraseAfter, maxBytes: studios.maxBytes,
+    name: studios.name, createdAt: studios.createdAt, revision: studios.revision, eraseAfter: studios.eraseAfter, maxBytes: studios.maxBytes,
     // Written out: drizzle leaves the outer table's name away where it selects from one table.
     bytes: sql<string>`(select coalesce(sum(bytes), 0) from photos where photos.studio_id = studios.id)`,
-  }).from(studios).where(eq(studios.id, studioId))
-  return { createdAt: row!.createdAt.toISOString(), eraseAfter: row!.eraseAfter?.toISOString() ?? null, usage: { bytes: Number(row!.bytes), maxBytes: row!.maxBytes } }
+  }).from(studios).where(eq(studios.id, studio.id))
+  const { createdAt, eraseAfter, bytes, maxBytes, ...details } = row!
+  return {
+    id: studio.id, slug: studio.slug, role: studio.role, ...details, createdAt: createdAt.toISOString(),
+    usage: { bytes: Number(bytes), maxBytes },
+    eraseAfter: eraseAfter?.toISOString() ?? null, erasureGraceDays: readSettings().ERASURE_GRACE_DAYS,
+  }
+}
+
+/** Its address stays: links and codes that are out in the world go on working. */
+export async function renameStudio(studio: StudioAccess, name: string, revision: number): Promise<StudioDetails> {
+  await db().transaction(async (tx) => {
+    const [row] = await tx.select({ revision: studios.revision }).from(studios).where(eq(studios.id, studio.id)).for('update')
+    requireCurrent(row, revision)
+    await tx.update(studios).set({ name, revision: revision + 1 }).where(eq(studios.id, studio.id))
+    await recordEvent(tx, { studioId: studio.id, userId: studio.personId, kind: 'studio.renamed', recordId: studio.id })
+  })
+  return await studioDetailsOf(studio)
 }
 
 /** The last owner stays one: a studio without an owner could not be run, or erased. */

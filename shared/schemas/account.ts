@@ -25,6 +25,7 @@ export const accountEndpoints = {
   listTokens: endpoint({ method: 'GET', path: '/api/me/tokens', access: 'session', only: 'session', summary: 'Tokens for scripts.', answers: { 200: z.object({ items: z.array(token) }) } }),
   createToken: endpoint({ method: 'POST', path: '/api/me/tokens', access: 'fresh-session', account: true, summary: 'A bearer token; it is shown this once.', body: tokenBody, answers: { 201: z.object({ id, token: z.string() }) } }),
   revokeToken: endpoint({ method: 'DELETE', path: '/api/me/tokens/:token', access: 'session', only: 'session', summary: 'Revoke a token.', answers: { 204: null } }),
+  erasureOfMe: endpoint({ method: 'GET', path: '/api/me/erasure', access: 'session', only: 'session', summary: 'When the account will be erased, if that was asked for, and how long one can think it over.', answers: { 200: z.object({ eraseAfter: instant.nullable(), graceDays: z.number() }) } }),
   eraseMe: endpoint({ method: 'POST', path: '/api/me/erasure', access: 'fresh-session', summary: 'Erase the account and what is one’s own after a time of grace.', answers: { 200: z.object({ eraseAfter: instant }) } }),
   keepMe: endpoint({ method: 'DELETE', path: '/api/me/erasure', access: 'session', only: 'session', summary: 'Keep the account after all.', answers: { 204: null } }),
 }

@@ -1,7 +1,7 @@
 import { z } from 'zod'
 import { endpoint } from './endpoint'
 import { limits } from './limits'
-import { id, instant, listOf, listQuery, name, newId } from './primitives'
+import { id, instant, listOf, listQuery, name, newId, revision } from './primitives'
 
 export const roles = ['member', 'technician', 'owner'] as const
 export const role = z.enum(roles)
@@ -28,6 +28,14 @@ export const loginBody = z.strictObject({ email: z.string().max(limits.emailLeng
 const signedIn = z.object({ user, studio: studioMembership })
 export const me = z.object({ user, studios: z.array(studioMembership) })
 
+export const studioDetails = studioMembership.extend({
+  createdAt: instant, revision,
+  usage: z.object({ bytes: z.number(), maxBytes: z.number() }),
+  /** when it will be erased, if somebody asked for that; how long one can think it over */
+  eraseAfter: instant.nullable(), erasureGraceDays: z.number(),
+})
+export type StudioDetails = z.infer<typeof studioDetails>
+
 export const invitationBody = z.strictObject({ id: newId, email, role })
 export const invitation = z.object({ id, email: z.string(), role, invitedBy: z.string(), expiresAt: instant, createdAt: instant })
 export type Invitation = z.infer<typeof invitation>
@@ -42,7 +50,8 @@ export const peopleEndpoints = {
   resetPassword: endpoint({ method: 'POST', path: '/api/auth/resets', access: 'public', summary: 'Set a new password by the letter’s link; every session of before ends.', body: z.strictObject({ token: letterToken, password: newPassword }), answers: { 200: me } }),
   me: endpoint({ method: 'GET', path: '/api/me', access: 'session', summary: 'The signed-in person and their studios.', answers: { 200: me } }),
   createStudio: endpoint({ method: 'POST', path: '/api/studios', access: 'session', account: true, summary: 'Open another studio, as its owner.', body: z.strictObject({ name }), answers: { 201: studioMembership } }),
-  studio: endpoint({ method: 'GET', path: '/api/studios/:studio', access: 'member', summary: 'One studio.', answers: { 200: studioMembership.extend({ createdAt: instant, eraseAfter: instant.nullable(), usage: z.object({ bytes: z.number(), maxBytes: z.number() }) }) } }),
+  studio: endpoint({ method: 'GET', path: '/api/studios/:studio', access: 'member', summary: 'One studio.', answers: { 200: studioDetails } }),
+  changeStudio: endpoint({ method: 'PATCH', path: '/api/studios/:studio', access: 'owner', summary: 'Rename the studio; its address stays.', body: z.strictObject({ name, revision }), answers: { 200: studioDetails } }),
   people: endpoint({ method: 'GET', path: '/api/studios/:studio/people', access: 'member', summary: 'The studio’s people and roles.', answers: { 200: z.object({ items: z.array(z.object({ id, name: z.string(), role })) }) } }),
   changePerson: endpoint({ method: 'PATCH', path: person, access: 'owner', summary: 'Change somebody’s role; the last owner stays one.', body: z.strictObject({ role }), answers: { 200: z.object({ id, name: z.string(), role }) } }),
   removePerson: endpoint({ method: 'DELETE', path: person, access: 'member', summary: 'Take somebody out of the studio (owners), or leave it oneself.', answers: { 204: null } }),

@@ -46,6 +46,7 @@ export const accountCases: RouteCase[] = [
     file: 'me/tokens/[token].delete.ts', row: 'revokeToken',
     good: async ({ owner }) => ({ params: { token: (await owner.agent.post('/api/me/tokens', { name: 'A script' })).body.id }, status: 204 }),
   },
+  { file: 'me/erasure.get.ts', row: 'erasureOfMe', good: () => ({}) },
   { file: 'me/erasure.post.ts', row: 'eraseMe', caller: async () => (await newStudio()).agent, good: () => ({}) },
   { file: 'me/erasure.delete.ts', row: 'keepMe', good: () => ({ status: 204 }) },
 ]

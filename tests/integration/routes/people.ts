@@ -81,6 +81,11 @@ export const peopleCases: RouteCase[] = [
     bad: [{ why: 'an empty name', call: () => ({ json: { name: '  ' }, status: 422, code: 'invalid_input' }) }],
   },
   { file: 'studios/[studio]/index.get.ts', row: 'studio', good: () => ({}) },
+  {
+    file: 'studios/[studio]/index.patch.ts', row: 'changeStudio',
+    good: async ({ owner }) => ({ json: { name: 'Rope Walk Printers’ Loft', revision: (await owner.agent.get(owner.root)).body.revision } }),
+    bad: [{ why: 'an older revision', call: () => ({ json: { name: 'Rope Walk', revision: 99 }, status: 409, code: 'stale_revision' }) }],
+  },
   { file: 'studios/[studio]/people/index.get.ts', row: 'people', good: () => ({}) },
   { file: 'studios/[studio]/test-letters/index.post.ts', row: 'sendTestLetter', good: () => ({ status: 202 }) },
   { file: 'studios/[studio]/events.get.ts', row: 'events', good: () => ({}), endless: true },

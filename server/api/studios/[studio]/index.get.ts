@@ -1,5 +1,4 @@
 import { peopleEndpoints } from '#shared/schemas/people'
-import { studioDetails } from '../../../services/people'
+import { studioDetailsOf } from '../../../services/people'
 
-export default defineRoute(peopleEndpoints.studio, async ({ studio: { id, slug, name, role } }) =>
-  ({ id, slug, name, role, ...await studioDetails(id) }))
+export default defineRoute(peopleEndpoints.studio, ({ studio }) => studioDetailsOf(studio))

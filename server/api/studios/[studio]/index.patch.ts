@@ -1,0 +1,4 @@
+import { peopleEndpoints } from '#shared/schemas/people'
+import { renameStudio } from '../../../services/people'
+
+export default defineRoute(peopleEndpoints.changeStudio, ({ studio, body: { name, revision } }) => renameStudio(studio, name, revision))
