@@ -3,11 +3,35 @@ import { z } from 'zod'
 const flag = (fallback: boolean) => z.stringbool().default(fallback)
 const seconds = (fallback: number) => z.coerce.number().positive().default(fallback)
 
+const storageFields = {
+  /** folder of originals, film files and caches */
+  STORAGE_DIR: z.string().min(1),
+  /** an S3-compatible store for what is kept for good; without S3_BUCKET that lies in STORAGE_DIR too */
+  S3_BUCKET: z.string().min(3).optional(),
+  S3_REGION: z.string().default('us-east-1'),
+  /** the address of a store that isn't the default one */
+  S3_ENDPOINT: z.url({ protocol: /^https?$/, error: 'an http:// or https:// address' }).optional(),
+  S3_ACCESS_KEY_ID: z.string().min(1).optional(),
+  S3_SECRET_ACCESS_KEY: z.string().min(1).optional(),
+  /** for so long a presigned link to the store works, to which downloads are sent on; 0: web sends files itself */
+  S3_LINK_SECONDS: z.coerce.number().int().min(0).max(604_800).default(0),
+  /** local copies of what lies in the store */
+  S3_COPIES_MAX_BYTES: z.coerce.number().int().positive().default(20_000_000_000),
+}
+const requireStoreKeys = (settings: { S3_BUCKET?: string, S3_ACCESS_KEY_ID?: string, S3_SECRET_ACCESS_KEY?: string }, context: z.RefinementCtx) => {
+  if (!settings.S3_BUCKET) return
+  for (const name of ['S3_ACCESS_KEY_ID', 'S3_SECRET_ACCESS_KEY'] as const) {
+    if (!settings[name]) context.addIssue({ code: 'custom', path: [name], message: 'is needed with S3_BUCKET' })
+  }
+}
+/** What programs need that only open the storage. */
+export const storageSettingsSchema = z.object(storageFields).superRefine(requireStoreKeys)
+export type StorageSettings = z.infer<typeof storageSettingsSchema>
+
 /** Every setting of the service, by environment variable. A process that cannot read them stops, naming the variable. */
 export const settingsSchema = z.object({
   DATABASE_URL: z.url({ protocol: /^postgres(ql)?$/, error: 'a postgres:// address' }),
-  /** folder of originals, film files and caches */
-  STORAGE_DIR: z.string().min(1),
+  ...storageFields,
   HOST: z.string().default('127.0.0.1'),
   PORT: z.coerce.number().int().min(1).max(65535).default(3000),
   /** our own origin: checked on unsafe requests, used in links and QR codes; never taken from Host */
@@ -49,7 +73,7 @@ export const settingsSchema = z.object({
   /** answers are checked against the contract before they leave: on in tests */
   CHECK_ANSWERS: flag(false),
   RATE_LIMITS: flag(true),
-})
+}).superRefine(requireStoreKeys)
 
 export type Settings = z.infer<typeof settingsSchema>
 

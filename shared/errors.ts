@@ -51,6 +51,7 @@ export const errorCodes = {
   reading_unfit: [422, 'Reading unfit'],
   too_many_requests: [429, 'Too many requests'],
   disk_full: [507, 'Disk full'],
+  file_missing: [503, 'File missing'],
   image_child_failed: [503, 'Picture work failed'],
   unavailable: [503, 'Unavailable'],
   internal: [500, 'Internal error'],

@@ -2,13 +2,13 @@ import { createHash } from 'node:crypto'
 import { createReadStream, createWriteStream } from 'node:fs'
 import { mkdir } from 'node:fs/promises'
 import { dirname } from 'node:path'
-import { PassThrough } from 'node:stream'
+import { PassThrough, type Readable } from 'node:stream'
 import { pipeline } from 'node:stream/promises'
 import { z } from 'zod'
 
 const fileFacts = { bytes: z.number().int().min(0), sha256: z.string().regex(/^[0-9a-f]{64}$/) }
 /** a storage key: ids and hashes, so that no entry can leave the folder */
-const key = z.string().regex(/^(originals|films)(\/[\w-]+){2}(\.[a-z]+)?$/)
+const key = z.string().regex(/^(originals|scans|films)(\/[\w-]+){2}(\.[a-z]+)?$/)
 
 /** What stands in a backup's `manifest.json`. */
 export const manifestSchema = z.strictObject({
@@ -25,7 +25,10 @@ export type Manifest = z.infer<typeof manifestSchema>
 export interface FileFacts { bytes: number, sha256: string }
 
 /** Reads a file through, into `target` if given, and tells its size and SHA-256. */
-export async function hashFile(path: string, target?: string): Promise<FileFacts> {
+export const hashFile = (path: string, target?: string): Promise<FileFacts> => hashStream(createReadStream(path), target)
+
+/** The same of bytes that come from anywhere. */
+export async function hashStream(source: Readable, target?: string): Promise<FileFacts> {
   const hash = createHash('sha256')
   let bytes = 0
   const count = new PassThrough().on('data', (chunk: Buffer) => {
@@ -34,10 +37,10 @@ export async function hashFile(path: string, target?: string): Promise<FileFacts
   })
   if (target) {
     await mkdir(dirname(target), { recursive: true })
-    await pipeline(createReadStream(path), count, createWriteStream(target, { flags: 'wx', mode: 0o600 }))
+    await pipeline(source, count, createWriteStream(target, { flags: 'wx', mode: 0o600 }))
   }
   else {
-    await pipeline(createReadStream(path), count.resume())
+    await pipeline(source, count.resume())
   }
   return { bytes, sha256: hash.digest('hex') }
 }

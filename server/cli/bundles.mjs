@@ -9,6 +9,7 @@ const programs = {
   'demo': 'server/cli/demo.ts',
   'backup': 'server/cli/backup.ts',
   'restore': 'server/cli/restore.ts',
+  'check-storage': 'server/cli/check-storage.ts',
   'bench': 'server/cli/bench.ts',
   'local-mailbox': 'server/cli/local-mailbox.ts',
   'image-child': 'server/image/child.ts',

@@ -1,8 +1,11 @@
 import { spawnSync } from 'node:child_process'
-import { readdir, readFile, rm } from 'node:fs/promises'
-import { dirname, join } from 'node:path'
+import { copyFile, readdir, readFile } from 'node:fs/promises'
+import { join } from 'node:path'
 import pg from 'pg'
-import { openStorage } from '../storage'
+import { storageSettingsSchema } from '../config'
+import { openConfiguredStorage } from '../services/storage'
+import type { Storage } from '../storage'
+import { keptKinds } from '../storage/keys'
 import { hashFile, manifestSchema, type Manifest } from './backup-manifest'
 import { knownMigrations } from './known-migrations'
 
@@ -26,9 +29,9 @@ async function verify(folder: string, { database, files, migrations }: Manifest)
   }
 }
 
-async function requireEmpty(client: pg.Client, storageFolder: string): Promise<void> {
+async function requireEmpty(client: pg.Client, storage: Storage): Promise<void> {
   const { rows: [{ tables }] } = await client.query(`select count(*)::int as tables from pg_tables where schemaname not in ('pg_catalog', 'information_schema')`)
-  const files = await readdir(storageFolder).catch(() => [])
+  const files = [...await readdir(storage.root).catch(() => []), ...(await Promise.all(keptKinds.map(kind => storage.list(kind)))).flat()]
   if (tables > 0 || files.length > 0) throw new Error('This installation is not empty, so nothing was restored. Set DATA_DIR to a new folder, or move the data folder away.')
 }
 
@@ -41,23 +44,31 @@ function restoreDatabase(url: string, file: string): void {
   if (status !== 0) throw new Error('pg_restore failed; the database was left as it was.')
 }
 
-async function restore(folder: string, url: string, storageFolder: string): Promise<Manifest> {
+async function putBack(storage: Storage, from: string, key: string, sha256: string): Promise<void> {
+  const file = await storage.temporary('restored')
+  try {
+    await copyFile(from, file.path)
+    if ((await hashFile(file.path)).sha256 !== sha256) throw new Error(`${key} changed while it was copied. Nothing was restored.`)
+    await file.keep(key)
+  }
+  finally {
+    await file.discard()
+  }
+}
+
+async function restore(folder: string, url: string, storage: Storage): Promise<Manifest> {
   const manifest = await readManifest(folder)
   await verify(folder, manifest)
   const client = new pg.Client({ connectionString: url })
   await client.connect()
   try {
-    await requireEmpty(client, storageFolder)
-    const storage = openStorage(storageFolder)
+    await requireEmpty(client, storage)
     try {
-      for (const { key, sha256 } of manifest.files) {
-        const copied = await hashFile(join(folder, 'files', key), storage.pathOf(key))
-        if (copied.sha256 !== sha256) throw new Error(`${key} changed while it was copied. Nothing was restored.`)
-      }
+      for (const { key, sha256 } of manifest.files) await putBack(storage, join(folder, 'files', key), key, sha256)
       restoreDatabase(url, join(folder, manifest.database.file))
     }
     catch (error) {
-      await Promise.all(['originals', 'films'].map(name => rm(join(dirname(storage.pathOf('x')), name), { recursive: true, force: true })))
+      await Promise.all([...keptKinds, 'temporary'].map(folder => storage.removeFolder(folder)))
       throw error
     }
     return manifest
@@ -67,7 +78,7 @@ async function restore(folder: string, url: string, storageFolder: string): Prom
   }
 }
 
-restore(process.argv[2]!, process.env.DATABASE_URL!, process.env.STORAGE_DIR!).then(({ files, notThere }) => {
+restore(process.argv[2]!, process.env.DATABASE_URL!, openConfiguredStorage(storageSettingsSchema.parse(process.env))).then(({ files, notThere }) => {
   process.stdout.write(`Restored the database and ${files.length} files, each with its hash.${notThere.length ? ` ${notThere.length} film files are made again when asked for.` : ''}\n`)
 }, (error: Error) => {
   process.stderr.write(`${error.message}\n`)

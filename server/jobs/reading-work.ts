@@ -25,7 +25,7 @@ export const readingWork: LeasedWork<typeof readings> = {
   async work(lease, calls) {
     const { row } = lease
     const candidates = await candidateWedges(row)
-    const seen = await readingChild().call('identifyScan', { path: pathOf(row), corners: cornersOf(row), pages: await pagesOf(candidates) }, calls)
+    const seen = await readingChild().call('identifyScan', { path: await pathOf(row), corners: cornersOf(row), pages: await pagesOf(candidates) }, calls)
     await leases.note(lease, { fileFormat: seen.format, fileWidth: seen.width, fileHeight: seen.height })
     const { wedge, warnings } = await wedgeOfScan(row, seen.code, candidates)
     await leases.note(lease, { wedgeId: wedge.id })
@@ -42,7 +42,7 @@ export const readingWork: LeasedWork<typeof readings> = {
   },
 }
 
-const pathOf = ({ studioId, id }: ReadingRow): string => storage().pathOf(storageKeys.scan(studioId, id))
+const pathOf = ({ studioId, id }: ReadingRow): Promise<string> => storage().localPath(storageKeys.scan(studioId, id))
 const cornersOf = ({ order }: ReadingRow): Corners | undefined => order.corners
 
 /** Pages that differ: wedges of one grid and resolution share theirs. */
@@ -54,7 +54,7 @@ async function pagesOf(candidates: Parameters<typeof wedgeChartOf>[0][]): Promis
 async function readPatches(row: ReadingRow, seen: IdentifiedScan, { page, readingLevels }: Awaited<ReturnType<typeof wedgeChartOf>>, calls: Required<CallOptions>): Promise<ImageCalls['readScan']['out'] & { found: true }> {
   const quality = qualityOf(row, seen)
   const report = await readingChild().call('readScan', {
-    path: pathOf(row), page, levels: readingLevels, corners: cornersOf(row), quality, paperLightness: quality === 'scan' ? undefined : await paperLightnessOf(row),
+    path: await pathOf(row), page, levels: readingLevels, corners: cornersOf(row), quality, paperLightness: quality === 'scan' ? undefined : await paperLightnessOf(row),
   }, calls)
   if (!report.found) throw new ComputeError('wedge_not_found', report.warnings.map(({ message }) => message).join(' '))
   return report

@@ -34,8 +34,8 @@ export const filmWork: LeasedWork<typeof renders> = {
 }
 
 /** A negative's film is made of its photo, a wedge's of its record alone. */
-function callFor({ studioId, photoId, renderKey, order }: RenderRow, target: string, options: CallOptions) {
+async function callFor({ studioId, photoId, renderKey, order }: RenderRow, target: string, options: CallOptions) {
   if (!('geometry' in order)) return filmChild().call('wedgeFilm', { target, order, renderKey }, options)
   if (photoId === null) throw new ComputeError('unavailable', 'This film has no photo to be made of.')
-  return filmChild().call('film', { ...photoSource({ studioId, id: photoId }), target, order, renderKey }, options)
+  return filmChild().call('film', { ...await photoSource({ studioId, id: photoId }), target, order, renderKey }, options)
 }

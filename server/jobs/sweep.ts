@@ -99,11 +99,21 @@ async function removeLeastUsed(): Promise<boolean> {
 
 /** The same for thumbnails, proxies and forecasts, which no row names: the least used go first. */
 export async function shrinkPictureCache(maxBytes = readSettings().PICTURE_CACHE_MAX_BYTES): Promise<number> {
-  const files = await Promise.all((await storage().list('cache')).map(async file => ({ ...file, bytes: (await storage().stat(file.key))?.size ?? 0 })))
+  return shrinkFolder('cache', maxBytes)
+}
+
+/** A file that was asked for lately may be about to be read. */
+const copyInUseSeconds = 3600
+
+/** Local copies of what lies in the bucket: the least used go first. */
+export const shrinkCopies = (maxBytes = readSettings().S3_COPIES_MAX_BYTES): Promise<number> => shrinkFolder('copies', maxBytes, copyInUseSeconds)
+
+async function shrinkFolder(folder: string, maxBytes: number, inUseSeconds = 0): Promise<number> {
+  const files = await storage().list(folder)
   let bytes = files.reduce((sum, file) => sum + file.bytes, 0)
   let removed = 0
   for (const file of files.sort((a, b) => a.changedAt - b.changedAt)) {
-    if (bytes <= maxBytes) break
+    if (bytes <= maxBytes || !olderThan(inUseSeconds)(file)) break
     await storage().remove(file.key)
     bytes -= file.bytes
     removed++

@@ -12,7 +12,7 @@ import { sendNextLetter } from './letter-work'
 import { jobNames, type JobName } from './names'
 import { readingWork } from './reading-work'
 import { filmWork } from './render-work'
-import { shrinkFilmCache, shrinkPictureCache, sweepFilms, sweepScans, sweepTemporaryFiles, sweepUploads } from './sweep'
+import { shrinkCopies, shrinkFilmCache, shrinkPictureCache, sweepFilms, sweepScans, sweepTemporaryFiles, sweepUploads } from './sweep'
 
 export interface Worker { stop: () => Promise<void> }
 
@@ -61,6 +61,7 @@ export async function runWorker(settings: Settings, report: Report = () => {}): 
     const binned = await eraseBinnedPhotos()
     if (binned.length) report('sweep.bin', { photos: binned.length })
     await shrinkPictureCache(settings.PICTURE_CACHE_MAX_BYTES)
+    await shrinkCopies(settings.S3_COPIES_MAX_BYTES)
     for (const erased of [...await eraseWhatIsDue(), ...await erasePastStudents()]) report('erasure.done', erased)
     await pause(tidySeconds, noMore.signal)
   })

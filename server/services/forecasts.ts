@@ -13,6 +13,6 @@ export function forecastOf(parts: NegativeParts, { width, state }: { width: numb
   const order = filmOrder(parts, 'png')
   const palette = state === 'print' ? curve.colourPath ?? bench.process : state
   const asked = createHash('sha256').update(canonicalJson({ engine: engineVersion, order, width, state, palette })).digest('hex')
-  return cachedPicture(storageKeys.picture(photo.studioId, photo.id, asked), target =>
-    imageChild().call('forecast', { ...photoSource(photo), target, order, width, state, palette }))
+  return cachedPicture(storageKeys.picture(photo.studioId, photo.id, asked), async target =>
+    imageChild().call('forecast', { ...await photoSource(photo), target, order, width, state, palette }))
 }

@@ -1,5 +1,4 @@
 import { createHash } from 'node:crypto'
-import { utimes } from 'node:fs/promises'
 import type { z } from 'zod'
 import type { proxyQuery } from '#shared/schemas/photos'
 import { straightenedFrame } from '#shared/sheet/crop'
@@ -31,10 +30,9 @@ export async function cachedPicture(key: string, make: (target: string) => Promi
   }
   else {
     // What is used stays longest.
-    const now = new Date()
-    await utimes(storage().pathOf(key), now, now).catch(() => {})
+    await storage().touch(key)
   }
-  return { key, bytes: held.size, etag: createHash('sha256').update(`${key} ${engineVersion}`).digest('hex').slice(0, 32) }
+  return { key, bytes: held.bytes, etag: createHash('sha256').update(`${key} ${engineVersion}`).digest('hex').slice(0, 32) }
 }
 
 async function makePicture(key: string, make: (target: string) => Promise<unknown>): Promise<void> {
@@ -49,12 +47,12 @@ async function makePicture(key: string, make: (target: string) => Promise<unknow
 }
 
 /** A photo's file for the image child, and where its decoded codes may be kept. */
-export const photoSource = ({ studioId, id }: { studioId: string, id: string }): PictureSource =>
-  ({ path: storage().pathOf(storageKeys.original(studioId, id)), working: storage().pathOf(storageKeys.working(studioId, id)) })
+export const photoSource = async ({ studioId, id }: { studioId: string, id: string }): Promise<PictureSource> =>
+  ({ path: await storage().localPath(storageKeys.original(studioId, id)), working: storage().ownPath(storageKeys.working(studioId, id)) })
 
 export function thumbnailOf(photo: PhotoRow): Promise<CachedPicture> {
-  return cachedPicture(storageKeys.thumbnail(photo.studioId, photo.id), target =>
-    imageChild().call('thumbnail', { ...photoSource(photo), target, longerSide: thumbnailLongerSidePixels }))
+  return cachedPicture(storageKeys.thumbnail(photo.studioId, photo.id), async target =>
+    imageChild().call('thumbnail', { ...await photoSource(photo), target, longerSide: thumbnailLongerSidePixels }))
 }
 
 /** The preview's starting point: working-space channels of the photo, or of a region of it when zoomed in. */
@@ -65,7 +63,7 @@ export async function proxyOf(photo: PhotoRow, query: z.infer<typeof proxyQuery>
   const { width } = query
   const height = query.height ?? Math.min(2400, Math.max(1, Math.round(width * (cropHeight * frame.height) / (cropWidth * frame.width))))
   const asked = createHash('sha256').update(JSON.stringify([engineVersion, geometry, width, height])).digest('hex')
-  const picture = await cachedPicture(storageKeys.picture(photo.studioId, photo.id, asked), target =>
-    imageChild().call('proxy', { ...photoSource(photo), target, geometry, width, height }))
+  const picture = await cachedPicture(storageKeys.picture(photo.studioId, photo.id, asked), async target =>
+    imageChild().call('proxy', { ...await photoSource(photo), target, geometry, width, height }))
   return { ...picture, width, height }
 }

@@ -79,7 +79,7 @@ export async function filmOrState(film: FilmRequest): Promise<{ file: ReadyFilm 
   // The file is a cache's: one that got lost is made again.
   if (!held) return { render: showRender(await restart(row, 'ready')) }
   await db().update(renders).set({ lastUsedAt: sql`now()` }).where(byKey(film))
-  return { file: { key, bytes: held.size, format: row.format } }
+  return { file: { key, bytes: held.bytes, format: row.format } }
 }
 
 const knownCode = (code: string | null): ErrorCode => code !== null && code in errorCodes ? code as ErrorCode : 'image_child_failed'

@@ -21,6 +21,6 @@ export async function requireScan(studio: StudioAccess, id: string): Promise<Rea
 export function scanPicture(row: ReadingRow, { width, cells }: { width: number, cells: boolean }): Promise<CachedPicture> {
   const drawn = cells ? row.evidence?.cells : undefined
   const asked = createHash('sha256').update(JSON.stringify([engineVersion, row.fileSha256, width, drawn])).digest('hex')
-  return cachedPicture(storageKeys.picture(row.studioId, row.id, asked), target =>
-    imageChild().call('scanPicture', { path: storage().pathOf(storageKeys.scan(row.studioId, row.id)), working: storage().pathOf(storageKeys.working(row.studioId, row.id)), target, width, cells: drawn }))
+  return cachedPicture(storageKeys.picture(row.studioId, row.id, asked), async target =>
+    imageChild().call('scanPicture', { path: await storage().localPath(storageKeys.scan(row.studioId, row.id)), working: storage().ownPath(storageKeys.working(row.studioId, row.id)), target, width, cells: drawn }))
 }

@@ -21,7 +21,7 @@ export type UploadRow = typeof uploads.$inferSelect
 /** Files on their way, piece by piece. An upload is its sender's alone. */
 const ownedBy = (studio: StudioAccess) => and(eq(uploads.studioId, studio.id), eq(uploads.personId, studio.personId))
 
-export const partPath = ({ studioId, id }: Pick<UploadRow, 'studioId' | 'id'>): string => storage().pathOf(storageKeys.part(studioId, id))
+export const partPath = ({ studioId, id }: Pick<UploadRow, 'studioId' | 'id'>): string => storage().ownPath(storageKeys.part(studioId, id))
 
 /** What is on the disk, which a killed process leaves as far as it came; null where there is no part. */
 export async function partBytes(row: Pick<UploadRow, 'studioId' | 'id'>): Promise<number | null> {

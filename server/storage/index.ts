@@ -1,6 +1,14 @@
-import { createReadStream, type Stats } from 'node:fs'
-import { link, mkdir, open, readdir, rename, rm, stat, statfs, utimes } from 'node:fs/promises'
-import { dirname, join, resolve, sep } from 'node:path'
+import { createWriteStream } from 'node:fs'
+import { link, rename, rm } from 'node:fs/promises'
+import type { Readable } from 'node:stream'
+import { pipeline } from 'node:stream/promises'
+import { ComputeError } from '../../shared/errors'
+import { openBucket, type BucketSettings } from './bucket'
+import { flush, openDisk, type StoredFile } from './disk'
+import { isKept } from './keys'
+
+export type { StoredFile } from './disk'
+export { partsFolder, storageKeys, studioFolders } from './keys'
 
 /** A file on its way. Its modification time is its owner's lease: kept fresh while the owner lives, swept when stale. */
 export interface TemporaryFile {
@@ -14,106 +22,108 @@ export interface TemporaryFile {
   abandon: () => void
 }
 
-const renewTemporaryMs = 1000
+/** Local copies of what lies in the bucket, for work that needs a file. */
+const copyOf = (key: string) => `copies/${key}`
 
 /**
- * Files by key below one folder. Keys are made of ids and hashes only, never of what people typed.
- * A file is written under a temporary name and renamed, so that a key names a whole file or none.
+ * Files by key: all below one folder, or, where a bucket is named, what is kept for good there and only copies here.
+ * A file is written under a temporary name first, so that a key names a whole file or none.
  */
-export function openStorage(folder: string) {
-  const root = resolve(folder)
-  const ours = new Set<string>()
-  let renewal: NodeJS.Timeout | undefined
+export function openStorage(folder: string, bucketSettings?: BucketSettings) {
+  const disk = openDisk(folder)
+  const bucket = bucketSettings && openBucket(bucketSettings)
+  const inBucket = (key: string) => isKept(key) ? bucket : undefined
+  const localKey = (key: string) => inBucket(key) ? copyOf(key) : key
+  const fetching = new Map<string, Promise<void>>()
 
-  const pathOf = (key: string) => {
-    const path = join(root, key)
-    if (!path.startsWith(root + sep)) throw new Error(`Storage key leaves the storage folder: ${key}`)
-    return path
+  async function temporary(label: string): Promise<TemporaryFile> {
+    const path = await disk.temporary(label)
+    return {
+      path,
+      async keep(key) {
+        await flush(path)
+        await inBucket(key)?.put(key, path)
+        await rename(path, await disk.preparedPath(localKey(key)))
+        disk.letGo(path)
+      },
+      async keepBeside(key) {
+        await flush(path)
+        await inBucket(key)?.put(key, path)
+        await link(path, await disk.preparedPath(localKey(key)))
+      },
+      async discard() {
+        if (disk.letGo(path)) await rm(path, { force: true })
+      },
+      abandon: () => void disk.letGo(path),
+    }
   }
-  const preparedPath = async (key: string) => {
-    const path = pathOf(key)
-    await mkdir(dirname(path), { recursive: true })
-    return path
-  }
-  const renewOurs = () => {
-    const now = new Date()
-    for (const path of ours) utimes(path, now, now).catch(() => {})
+
+  async function fetchCopy(key: string): Promise<void> {
+    const bytes = await bucket!.read(key)
+    if (!bytes) throw missing(key)
+    const path = await disk.temporary('copy')
+    try {
+      await pipeline(bytes, createWriteStream(path))
+      await rename(path, await disk.preparedPath(copyOf(key)))
+    }
+    finally {
+      if (disk.letGo(path)) await rm(path, { force: true })
+    }
   }
 
   return {
-    root,
-    pathOf,
-    /** an empty file under a fresh name; `label` stands in the name, for the sweep */
-    async temporary(label: string): Promise<TemporaryFile> {
-      const path = await preparedPath(`temporary/${label}.${crypto.randomUUID()}`)
-      await (await open(path, 'wx')).close()
-      ours.add(path)
-      renewal ??= setInterval(renewOurs, renewTemporaryMs).unref()
-      return {
-        path,
-        async keep(key) {
-          await flush(path)
-          await rename(path, await preparedPath(key))
-          ours.delete(path)
-        },
-        async keepBeside(key) {
-          await flush(path)
-          await link(path, await preparedPath(key))
-        },
-        async discard() {
-          if (ours.delete(path)) await rm(path, { force: true })
-        },
-        abandon() {
-          ours.delete(path)
-        },
+    root: disk.root,
+    temporary,
+    /** The path of a file for work that reads it, fetched first where only the bucket has it. Throws `file_missing`. */
+    async localPath(key: string): Promise<string> {
+      const local = localKey(key)
+      if (!await disk.stat(local)) {
+        if (!inBucket(key)) throw missing(key)
+        const work = fetching.get(key) ?? fetchCopy(key).finally(() => fetching.delete(key))
+        fetching.set(key, work)
+        await work
       }
+      if (local !== key) await disk.touch(local)
+      return disk.pathOf(local)
     },
-    async stat(key: string): Promise<Stats | null> {
-      return stat(pathOf(key)).catch(() => null)
+    /** Where work may keep a file of its own on this machine, in a cache or while it grows. */
+    ownPath(key: string): string {
+      if (isKept(key)) throw new Error(`Kept for good, not this machine's own: ${key}`)
+      return disk.pathOf(key)
     },
-    read: (key: string, range?: { start: number, end: number }) => createReadStream(pathOf(key), range),
-    remove: (key: string) => rm(pathOf(key), { force: true }),
-    removeFolder: (key: string) => rm(pathOf(key), { force: true, recursive: true }),
-    /** keys of all files below a folder, with the time of their last change of any kind */
-    async list(below: string): Promise<{ key: string, changedAt: number }[]> {
-      const entries = await readdir(pathOf(below), { recursive: true, withFileTypes: true }).catch(() => [])
-      const files = await Promise.all(entries.filter(e => e.isFile()).map(async (e) => {
-        const path = join(e.parentPath, e.name)
-        const facts = await stat(path).catch(() => null)
-        return facts && { key: path.slice(root.length + 1), changedAt: Math.max(facts.mtimeMs, facts.ctimeMs) }
-      }))
-      return files.filter(f => f !== null)
+    /** Puts off the day when a cached file goes. */
+    touch: (key: string) => disk.touch(localKey(key)),
+    stat: (key: string): Promise<StoredFile | null> => (inBucket(key) ?? disk).stat(key),
+    /** The bytes of a file, or of a part of it, both ends included. Throws `file_missing`. */
+    async read(key: string, range?: { start: number, end: number }): Promise<Readable> {
+      if (await disk.stat(localKey(key))) return disk.read(localKey(key), range)
+      return await inBucket(key)?.read(key, range) ?? Promise.reject(missing(key))
     },
-    async freeBytes(): Promise<number> {
-      await mkdir(root, { recursive: true })
-      const { bavail, bsize } = await statfs(root)
-      return bavail * bsize
+    /** The kept bytes themselves, not a local copy of them. */
+    async readKept(key: string): Promise<Readable> {
+      const remote = inBucket(key)
+      return remote ? await remote.read(key) ?? Promise.reject(missing(key)) : disk.read(key)
     },
+    /** An address that gives the file to whoever holds it, for so long; null where files are sent by ourselves. */
+    link: async (key: string, seconds: number, how: { contentType: string, disposition?: string }): Promise<string | null> =>
+      await inBucket(key)?.link(key, seconds, how) ?? null,
+    async move(from: string, to: string): Promise<void> {
+      await (inBucket(from) ?? disk).move(from, to)
+      if (inBucket(from)) await disk.remove(copyOf(from))
+    },
+    async remove(key: string): Promise<void> {
+      await inBucket(key)?.remove(key)
+      await disk.remove(localKey(key))
+    },
+    async removeFolder(key: string): Promise<void> {
+      await inBucket(key)?.removeFolder(key)
+      await disk.removeFolder(localKey(key))
+    },
+    list: (below: string): Promise<StoredFile[]> => (inBucket(below) ?? disk).list(below),
+    freeBytes: disk.freeBytes,
+    close: () => bucket?.close(),
   }
 }
 export type Storage = ReturnType<typeof openStorage>
 
-/** What is named by a key must be on the disk, not only in the system's memory. */
-async function flush(path: string): Promise<void> {
-  const file = await open(path, 'r')
-  await file.sync().finally(() => file.close())
-}
-
-/** Where uploads grow until they are whole: their rows, and no lease, say how long they stay. */
-export const partsFolder = 'temporary/parts'
-
-/** The folders that hold a studio's files. */
-export const studioFolders = (studioId: string) => ['originals', 'cache', 'films', 'scans', partsFolder].map(kind => `${kind}/${studioId}`)
-
-export const storageKeys = {
-  original: (studioId: string, photoId: string) => `originals/${studioId}/${photoId}`,
-  part: (studioId: string, uploadId: string) => `${partsFolder}/${studioId}/${uploadId}`,
-  scan: (studioId: string, readingId: string) => `scans/${studioId}/${readingId}`,
-  pictureFolder: (studioId: string, photoId: string) => `cache/${studioId}/${photoId}`,
-  thumbnail: (studioId: string, photoId: string) => `cache/${studioId}/${photoId}/thumbnail.jpg`,
-  /** a proxy's, forecast's, wedge preview's or shown scan's bytes, by the hash of what was asked */
-  picture: (studioId: string, recordId: string, hash: string) => `cache/${studioId}/${recordId}/${hash}`,
-  /** the decoded codes of a picture that is slow to decode */
-  working: (studioId: string, recordId: string) => `cache/${studioId}/${recordId}/working`,
-  film: (studioId: string, renderKey: string, format: string) => `films/${studioId}/${renderKey}.${format}`,
-}
+const missing = (key: string) => new ComputeError('file_missing', `A stored file is missing (${key}). Nothing else is wrong; whoever runs this installation can look for it with the storage check, or bring it back from a backup.`)

@@ -1,5 +1,6 @@
 import { pipeline } from 'node:stream/promises'
 import type { H3Event } from 'h3'
+import { readSettings } from '../config'
 import { storage } from '../services/storage'
 
 export interface SentFile {
@@ -24,8 +25,11 @@ export async function sendStoredFile(event: H3Event, file: SentFile): Promise<vo
   const etag = `"${file.etag}"`
   setResponseHeaders(event, { 'etag': etag, 'cache-control': file.cacheControl, 'accept-ranges': 'bytes' })
   if (isKnownTo(event, file.etag)) return endWith(event, 304)
-  setResponseHeader(event, 'content-type', file.contentType)
-  if (file.fileName) setResponseHeader(event, 'content-disposition', contentDisposition(file.fileName))
+  const link = file.fileName && !event.context.headOnly && await presigned(file)
+  if (link) {
+    setResponseHeaders(event, { 'location': link, 'cache-control': 'no-store' })
+    return endWith(event, 302)
+  }
 
   const ifRange = getHeader(event, 'if-range')
   const range = ifRange && ifRange !== etag ? 'whole' : readRange(getHeader(event, 'range'), file.bytes)
@@ -34,12 +38,21 @@ export async function sendStoredFile(event: H3Event, file: SentFile): Promise<vo
     return endWith(event, 416)
   }
   const { start, end } = range === 'whole' ? { start: 0, end: file.bytes - 1 } : range
+  const bytes = event.context.headOnly ? null : await storage().read(file.key, { start, end })
+  setResponseHeader(event, 'content-type', file.contentType)
+  if (file.fileName) setResponseHeader(event, 'content-disposition', contentDisposition(file.fileName))
   if (range !== 'whole') setResponseHeader(event, 'content-range', `bytes ${start}-${end}/${file.bytes}`)
   setResponseHeader(event, 'content-length', end - start + 1)
-  if (event.context.headOnly) return endWith(event, range === 'whole' ? 200 : 206)
+  if (!bytes) return endWith(event, range === 'whole' ? 200 : 206)
   setResponseStatus(event, range === 'whole' ? 200 : 206)
   // A reader who goes away is no error of ours.
-  await pipeline(storage().read(file.key, { start, end }), res).catch(() => res.destroy())
+  await pipeline(bytes, res).catch(() => res.destroy())
+}
+
+/** Where downloads go on to, once it is clear that this person may have the file. */
+function presigned({ key, contentType, fileName }: SentFile): Promise<string | null> | null {
+  const seconds = readSettings().S3_LINK_SECONDS
+  return seconds > 0 ? storage().link(key, seconds, { contentType, disposition: contentDisposition(fileName!) }) : null
 }
 
 /** True when the asker holds these bytes already. */
