@@ -69,7 +69,7 @@ describe('the storage check', () => {
     const { databaseUrl, storage, studio: { agent, root, studio } } = await installation()
     const pathOf = (key: string) => join(storage, key)
     const [lost, spoilt, sound] = await Promise.all(['#101010', '#808080', '#f0f0f0'].map(colour => sendPhoto(agent, root, colour)))
-    const keys = [lost, spoilt, sound].map(({ photo }) => storageKeys.original(studio.id, photo.id))
+    const keys = [lost!, spoilt!, sound!].map(({ photo }) => storageKeys.original(studio.id, photo.id))
     rmSync(pathOf(keys[0]!))
     const damaged = Buffer.from(spoilt!.picture)
     damaged[damaged.length >> 1]! ^= 1
