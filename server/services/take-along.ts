@@ -78,7 +78,7 @@ const textFile = (name: string, text: string, lastModified: Date): ArchiveFile =
 async function storedFile(name: string, key: string, lastModified: Date): Promise<ArchiveFile> {
   const held = await storage().stat(key)
   if (!held) return textFile(`${name} is missing.txt`, 'This file was not found where it is kept. Tell the studio’s owner.\n', lastModified)
-  return { name, input: storage().read(key), size: held.size, lastModified }
+  return { name, input: await storage().read(key), size: held.bytes, lastModified }
 }
 
 const photoName = (own: PhotoRow[], names: Map<PhotoRow, string>, { photo }: NegativeParts): string | undefined => {
