@@ -8,7 +8,7 @@ import { checkStorage } from '../../server/cli/storage-check'
 import { storageSettingsSchema } from '../../server/config'
 import { openConfiguredStorage } from '../../server/services/storage'
 import { storageKeys } from '../../server/storage'
-import { startApplication } from '../support/application'
+import { startApplication, startWorker } from '../support/application'
 import { newBucket } from '../support/bucket'
 import { connect, newDatabase, newFolder, runProgram } from '../support/house'
 import { newStudio, type Agent } from '../support/studio'
@@ -25,18 +25,19 @@ async function sendPhoto(agent: Agent, root: string, colour: string) {
 async function installation(env: Record<string, string> = {}) {
   const databaseUrl = await newDatabase('migrated')
   const storage = join(newFolder(), 'files')
-  const application = await startApplication({ programs: builtPrograms, databaseUrl, storage, env })
+  const settings = { programs: builtPrograms, databaseUrl, storage, env }
+  const application = await startApplication(settings)
   onTestFinished(() => {
     application.web.kill()
     application.worker.kill()
   })
-  return { databaseUrl, storage, address: application.address, studio: await newStudio('Rope Works Studio', application.address) }
+  return { settings, databaseUrl, storage, address: application.address, studio: await newStudio('Rope Works Studio', application.address) }
 }
 
 describe('an installation whose files lie in a bucket', () => {
   it('serves photos and films from there, by links once it is clear who asks, and erases them there', async () => {
     const bucket = await newBucket()
-    const { storage, address, studio: { agent, root, studio } } = await installation({ ...bucket, S3_LINK_SECONDS: '60', ERASURE_GRACE_DAYS: '0' })
+    const { settings, storage, address, studio: { agent, root, studio } } = await installation({ ...bucket, S3_LINK_SECONDS: '60', ERASURE_GRACE_DAYS: '0' })
     const { picture, photo } = await sendPhoto(agent, root, '#787060')
     const inBucket = openConfiguredStorage(storageSettingsSchema.parse({ STORAGE_DIR: newFolder(), ...bucket }))
     expect((await inBucket.stat(storageKeys.original(studio.id, photo.id)))?.bytes).toBe(picture.length)
@@ -59,6 +60,9 @@ describe('an installation whose files lie in a bucket', () => {
     expect((await stranger.agent.fetch('GET', `${root}/photos/${photo.id}/file`)).status).toBe(404)
 
     expect((await agent.post(`${root}/erasure`, { name: studio.name })).status).toBe(200)
+    // A worker looks for what is due when it starts, then every ten minutes.
+    const worker = startWorker(settings)
+    onTestFinished(() => worker.kill())
     await expect.poll(async () => (await agent.get(root)).status, { timeout: 40_000 }).toBe(404)
     for (const kind of ['originals', 'films']) expect(await inBucket.list(kind)).toEqual([])
   }, 120_000)
