@@ -48,7 +48,7 @@ async function serve(lock) {
   migrateDatabase(database, programs)
   const mailbox = await mailboxPorts(installation)
   const env = serviceEnvironment({ databaseUrl: database.url, sessionPassword: installation.sessionPassword, mailbox, programs })
-  const demo = database.external ? undefined : ensureDemo(installation, programs, env)
+  const demo = database.external ? undefined : ensureDemo({ installation, programs, env, database })
   const address = `http${process.env.TLS_CERT ? 's' : ''}://${env.HOST.includes(':') ? `[${env.HOST}]` : env.HOST}:${env.PORT}`
   const onGivenUp = (reason) => {
     process.stderr.write(`\n${reason}\n`)

@@ -93,7 +93,7 @@ export async function eraseWhatIsDue(): Promise<{ kind: 'studio' | 'account', id
 }
 
 /** Files first: while a row is there, a broken-off erasure is taken up again. */
-async function eraseStudio(studioId: string): Promise<void> {
+export async function eraseStudio(studioId: string): Promise<void> {
   for (const folder of studioFolders(studioId)) await storage().removeFolder(folder)
   await db().transaction(async (tx) => {
     for (const table of studioTables) await tx.delete(table).where(eq(table.studioId, studioId))

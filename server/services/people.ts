@@ -70,12 +70,14 @@ export async function lastUsedStudio(userId: string): Promise<string | undefined
 }
 
 export async function studiosOf(userId: string): Promise<StudioMembership[]> {
-  const rows = await db().select({ id: studios.id, slug: studios.slug, name: studios.name, role: memberships.role, class: { id: classes.id, name: classes.name, endsAt: classes.endsAt } })
+  const rows = await db().select({ id: studios.id, slug: studios.slug, name: studios.name, role: memberships.role, isDemo: studios.isDemo, class: { id: classes.id, name: classes.name, endsAt: classes.endsAt } })
     .from(memberships).innerJoin(studios, eq(studios.id, memberships.studioId))
     .leftJoin(classStudents, and(eq(classStudents.studioId, studios.id), eq(classStudents.id, userId), isStudent))
     .leftJoin(classes, and(eq(classes.studioId, classStudents.studioId), eq(classes.id, classStudents.classId)))
     .where(and(eq(memberships.userId, userId), or(isNull(classes.id), sql`not ${isPast()}`))).orderBy(asc(memberships.createdAt), asc(studios.id))
-  return rows.map(({ class: ownClass, ...studio }) => ownClass ? { ...studio, class: showOwnClass(ownClass) } : studio)
+  return rows.map(({ class: ownClass, isDemo, ...studio }) => ({
+    ...studio, ...ownClass ? { class: showOwnClass(ownClass) } : {}, ...isDemo && studio.role === 'owner' ? { isDemo } : {},
+  }))
 }
 
 /** Students stand on their class's board, and are not told of one another: they see who teaches, and themselves. */
@@ -87,17 +89,17 @@ export async function peopleOf({ id: studioId, personId, student }: StudioAccess
 }
 
 /** Opens a studio with this person as its owner. */
-export async function openStudio(tx: Transaction, ownerId: string, name: string): Promise<StudioMembership> {
-  const studio = await insertStudio(tx, name)
+export async function openStudio(tx: Transaction, ownerId: string, name: string, isDemo = false): Promise<StudioMembership> {
+  const studio = await insertStudio(tx, name, isDemo)
   await tx.insert(memberships).values({ studioId: studio.id, userId: ownerId, role: 'owner' })
   await recordEvent(tx, { studioId: studio.id, userId: ownerId, kind: 'studio.opened', recordId: studio.id })
   return { ...studio, role: 'owner' }
 }
 
-async function insertStudio(on: Queryable, name: string): Promise<{ id: string, slug: string, name: string }> {
+async function insertStudio(on: Queryable, name: string, isDemo: boolean): Promise<{ id: string, slug: string, name: string }> {
   const base = slugOf(name)
   for (const slug of [base, `${base}-2`, `${base}-3`, `${base}-${randomBytes(4).toString('hex')}`]) {
-    const [studio] = await on.insert(studios).values({ id: uuidv7(), slug, name, maxBytes: readSettings().STUDIO_MAX_BYTES })
+    const [studio] = await on.insert(studios).values({ id: uuidv7(), slug, name, isDemo, maxBytes: readSettings().STUDIO_MAX_BYTES })
       .onConflictDoNothing({ target: studios.slug }).returning({ id: studios.id, slug: studios.slug, name: studios.name })
     if (studio) return studio
   }

@@ -15,7 +15,8 @@ export const user = z.object({ id, name: z.string(), email: z.string().nullable(
 /** The class that one is a student of. Over: everything can be looked at and taken along, nothing changed. */
 export const ownClass = z.object({ id, name: z.string(), endsAt: instant, takeAlongUntil: instant, isOver: z.boolean() })
 export type OwnClass = z.infer<typeof ownClass>
-export const studioMembership = z.object({ id, slug: z.string(), name: z.string(), role, class: ownClass.optional() })
+/** `isDemo` is told to the owners of the invented demo studio alone. */
+export const studioMembership = z.object({ id, slug: z.string(), name: z.string(), role, class: ownClass.optional(), isDemo: z.literal(true).optional() })
 export const studio = z.object({ id, slug: z.string(), name: z.string() })
 export type User = z.infer<typeof user>
 export type StudioMembership = z.infer<typeof studioMembership>
@@ -63,6 +64,7 @@ export const peopleEndpoints = {
   sendTestLetter: endpoint({ method: 'POST', path: '/api/studios/:studio/test-letters', access: 'owner', summary: 'A letter to oneself, to see whether mail works.', answers: { 202: z.object({ id }) } }),
   testLetter: endpoint({ method: 'GET', path: '/api/studios/:studio/test-letters/:letter', access: 'owner', summary: 'How far a test letter has come.', answers: { 200: z.object({ id, state: z.enum(['waiting', 'sending', 'sent', 'failed']), attempts: z.number().int(), lastError: z.string().nullable() }) } }),
   eraseStudio: endpoint({ method: 'POST', path: '/api/studios/:studio/erasure', access: 'owner', fresh: true, summary: 'Erase the studio after a time of grace.', body: z.strictObject({ name: z.string() }), answers: { 200: z.object({ eraseAfter: instant }) } }),
+  removeDemo: endpoint({ method: 'DELETE', path: '/api/studios/:studio/demo', access: 'owner', only: 'session', summary: 'Remove the invented demo studio, its invented people and its files, at once; `wrong_state` for any other studio.', answers: { 204: null } }),
   keepStudio: endpoint({ method: 'DELETE', path: '/api/studios/:studio/erasure', access: 'owner', summary: 'Keep the studio after all.', answers: { 204: null } }),
   events: endpoint({ method: 'GET', path: '/api/studios/:studio/events', access: 'member', summary: 'Hints of what has changed, as server-sent events `{ topic, id, revision }`; `resync` first.', answers: { 200: ['text/event-stream'] } }),
 }

@@ -26,6 +26,8 @@ export async function ownInstallation() {
     rmSync(folder, { recursive: true, force: true })
   })
   return {
+    databaseUrl,
+    storage,
     inStorage: (...parts: string[]) => join(storage, ...parts),
     web: async (env: Record<string, string> = {}) => keep(await startWeb(settings(env))),
     worker: (env: Record<string, string> = {}) => keep(startWorker(settings(env))),

@@ -1,5 +1,5 @@
 import { sql } from 'drizzle-orm'
-import { bigint, bigserial, check, index, integer, jsonb, pgTable, primaryKey, text, uniqueIndex, uuid, varchar } from 'drizzle-orm/pg-core'
+import { bigint, bigserial, boolean, check, index, integer, jsonb, pgTable, primaryKey, text, uniqueIndex, uuid, varchar } from 'drizzle-orm/pg-core'
 import { limits } from '../../../shared/schemas/limits'
 import type { LetterKind } from '../../../shared/schemas/letters'
 import { createdAt, instant, revision } from './columns'
@@ -35,6 +35,8 @@ export const studios = pgTable('studios', {
   name: varchar({ length: limits.nameLength }).notNull(),
   maxBytes: bigint({ mode: 'number' }).notNull(),
   eraseAfter: instant(),
+  /** the invented studio that the start command makes; its owner can remove it at once */
+  isDemo: boolean().notNull().default(false),
   createdAt: createdAt(),
   revision: revision(),
 })

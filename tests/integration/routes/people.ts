@@ -1,10 +1,21 @@
 import { randomUUID } from 'node:crypto'
+import { sql } from '../../support/database'
 import { newInvitation, resetLinkFor } from '../../support/letters'
-import { newPersonIn } from '../../support/people'
+import { newPersonIn, setRole } from '../../support/people'
 import { newStudio } from '../../support/studio'
 import type { RouteCase } from './route-case'
+import type { World } from './world'
 
 const newcomer = () => ({ name: 'Otto Lind', email: `${randomUUID()}@ropeworks.example`, password: 'a long enough one' })
+
+/** A demo studio, which only the start command makes, with the world's people in it. */
+async function newDemoStudio({ owner, technician }: World): Promise<string> {
+  const { ids } = await newStudio()
+  await sql('update studios set is_demo = true where id = $1', [ids.studio])
+  await setRole(ids.studio, owner.ids.user, 'owner')
+  await setRole(ids.studio, technician.ids.user, 'technician')
+  return ids.studio
+}
 
 export const peopleCases: RouteCase[] = [
   {
@@ -74,6 +85,10 @@ export const peopleCases: RouteCase[] = [
   {
     file: 'studios/[studio]/erasure.post.ts', row: 'eraseStudio', good: async ({ owner }) => ({ json: { name: owner.studio.name } }),
     bad: [{ why: 'another name than the studio’s', call: () => ({ json: { name: 'Some other' }, status: 422, code: 'invalid_input' }) }],
+  },
+  {
+    file: 'studios/[studio]/demo.delete.ts', row: 'removeDemo', good: async world => ({ params: { studio: await newDemoStudio(world) }, status: 204 }),
+    bad: [{ why: 'a studio that is no demo', call: ({ owner }) => ({ params: { studio: owner.ids.studio }, status: 409, code: 'wrong_state' }) }],
   },
   { file: 'studios/[studio]/erasure.delete.ts', row: 'keepStudio', good: () => ({ status: 204 }) },
   {
