@@ -1,6 +1,11 @@
 import { z } from 'zod'
 
 const flag = (fallback: boolean) => z.stringbool().default(fallback)
+const isLoopback = (host: string) => /^(?:localhost|127\.\d+\.\d+\.\d+|\[::1\])$/.test(host)
+const isSafeIssuer = (address: string) => {
+  const { protocol, hostname } = new URL(address)
+  return protocol === 'https:' || (protocol === 'http:' && isLoopback(hostname))
+}
 const seconds = (fallback: number) => z.coerce.number().positive().default(fallback)
 
 const storageFields = {
@@ -28,6 +33,14 @@ const requireStoreKeys = (settings: { S3_BUCKET?: string, S3_ACCESS_KEY_ID?: str
 export const storageSettingsSchema = z.object(storageFields).superRefine(requireStoreKeys)
 export type StorageSettings = z.infer<typeof storageSettingsSchema>
 
+const requireWholeClient = (settings: { OIDC_ISSUER?: string, OIDC_CLIENT_ID?: string, OIDC_CLIENT_SECRET?: string }, context: z.RefinementCtx) => {
+  const three = ['OIDC_ISSUER', 'OIDC_CLIENT_ID', 'OIDC_CLIENT_SECRET'] as const
+  const given = three.find(name => settings[name] !== undefined)
+  for (const name of given ? three : []) {
+    if (settings[name] === undefined) context.addIssue({ code: 'custom', path: [name], message: `is needed with ${given}` })
+  }
+}
+
 /** Every setting of the service, by environment variable. A process that cannot read them stops, naming the variable. */
 export const settingsSchema = z.object({
   DATABASE_URL: z.url({ protocol: /^postgres(ql)?$/, error: 'a postgres:// address' }),
@@ -37,6 +50,12 @@ export const settingsSchema = z.object({
   /** our own origin: checked on unsafe requests, used in links and QR codes; never taken from Host */
   NUXT_PUBLIC_URL: z.url().optional(),
   NUXT_SESSION_PASSWORD: z.string().min(32),
+  /** an OpenID Connect provider that people may sign in with; whoever runs the installation trusts it to check addresses */
+  OIDC_ISSUER: z.url().refine(isSafeIssuer, 'an https:// address; http:// on loopback only').optional(),
+  OIDC_CLIENT_ID: z.string().min(1).optional(),
+  OIDC_CLIENT_SECRET: z.string().min(1).optional(),
+  /** the provider's name on buttons */
+  OIDC_NAME: z.string().trim().min(1).max(40).default('OpenID Connect'),
   REGISTRATION: z.enum(['open', 'invite']).default('open'),
   /** proxies whose forwarding headers are believed, as addresses or CIDR ranges */
   TRUSTED_PROXIES: z.string().default(''),
@@ -73,7 +92,7 @@ export const settingsSchema = z.object({
   /** answers are checked against the contract before they leave: on in tests */
   CHECK_ANSWERS: flag(false),
   RATE_LIMITS: flag(true),
-}).superRefine(requireStoreKeys)
+}).superRefine(requireStoreKeys).superRefine(requireWholeClient)
 
 export type Settings = z.infer<typeof settingsSchema>
 

@@ -51,6 +51,12 @@ export const passkeyRemovedLetter = ({ name }: { name: string }): LetterContent 
   footer: 'If this was not you, sign in and set a new password at once.',
 })
 
+export const identityLinkedLetter = ({ provider }: { provider: string }): LetterContent => ({
+  subject: `Your account opens with ${provider}`,
+  paragraphs: [`Somebody signed in with ${provider} under this address, most likely you. From now on ${provider} opens your Emulside account, beside the ways it had before.`],
+  footer: 'If this was not you, or you never made this account yourself, set a new password on the sign-in page; that signs everybody else out.',
+})
+
 export const accountErasureLetter = ({ on, url }: { on: string, url: string }): LetterContent => ({
   subject: 'Your account will be erased',
   paragraphs: [`Your account, your photos and your negatives will be erased on ${on}. Until then you can sign in and keep them.`],

@@ -111,7 +111,7 @@ export async function eraseAccount(userId: string): Promise<void> {
   for (const { studioId, id } of own) await db().transaction(tx => erasePhoto(tx, studioId, id))
   await db().transaction(async (tx) => {
     await tx.delete(negatives).where(eq(negatives.createdBy, userId))
-    for (const table of [tables.passkeys, tables.passkeyChallenges, sessions, tokens, letterLinks, letters, memberships]) await tx.delete(table).where(eq(table.userId, userId))
+    for (const table of [tables.passkeys, tables.passkeyChallenges, tables.identities, sessions, tokens, letterLinks, letters, memberships]) await tx.delete(table).where(eq(table.userId, userId))
     await tx.delete(tables.classStudents).where(eq(tables.classStudents.id, userId))
     await tx.delete(invitations).where(or(eq(invitations.invitedBy, userId), eq(invitations.acceptedBy, userId)))
     await tx.update(users).set({ name: 'Erased account', email: `${userId}@erased.invalid`, passwordHash: null, eraseAfter: null, lettersOff: [] }).where(eq(users.id, userId))

@@ -85,8 +85,10 @@ export async function lookAtInvitation(token: string): Promise<{ studioName: str
 }
 
 /** Whoever holds the letter's link may join, under whatever address they sign in with. A higher role that they have stays. */
-export async function joinByInvitation(tx: Transaction, userId: string, token: string): Promise<StudioMembership> {
-  const [invitation] = await tx.update(invitations).set({ acceptedAt: sql`now()`, acceptedBy: userId }).where(and(eq(invitations.tokenHash, hashOfSecret(token)), isOpen)).returning()
+export const joinByInvitation = (tx: Transaction, userId: string, token: string): Promise<StudioMembership> => joinByInvitationHash(tx, userId, hashOfSecret(token))
+
+export async function joinByInvitationHash(tx: Transaction, userId: string, tokenHash: string): Promise<StudioMembership> {
+  const [invitation] = await tx.update(invitations).set({ acceptedAt: sql`now()`, acceptedBy: userId }).where(and(eq(invitations.tokenHash, tokenHash), isOpen)).returning()
   if (!invitation) throw isVoid()
   const { studioId } = invitation
   const [before] = await tx.select({ role: memberships.role }).from(memberships).where(and(eq(memberships.studioId, studioId), eq(memberships.userId, userId)))

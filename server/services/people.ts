@@ -12,26 +12,38 @@ import { requireRole, type StudioAccess } from './access'
 import { recordEvent } from './audit'
 import { isPast, isStudent, showOwnClass } from './class-times'
 import { hint } from './hints'
-import { joinByInvitation } from './invitations'
+import { joinByInvitationHash } from './invitations'
 import { postLetter } from './letters'
 import { hashPassword, passwordMatches } from './passwords'
 import { requireCurrent, requireFound } from './revisions'
+import { hashOfSecret } from './secrets'
 import { openSession, revokeSession, revokeSessionsOf } from './sessions'
 
 export interface SignedIn { sessionId: string, user: User }
 
 /** Makes a person and a session: in a studio of their own, or in the one that an invitation names. */
 export async function register({ invitationToken, ...body }: z.infer<typeof registerBody>): Promise<SignedIn & { studio: StudioMembership }> {
-  if (readSettings().REGISTRATION === 'invite' && !invitationToken) throw new ComputeError('registration_closed', 'This installation is open by invitation only. Ask an owner of a studio to invite you.')
+  const invitationHash = invitationToken && hashOfSecret(invitationToken)
+  requireOpenFor(invitationHash)
   const passwordHash = await hashPassword(body.password)
   return await db().transaction(async (tx) => {
-    const [user] = await tx.insert(users).values({ id: uuidv7(), name: body.name, email: body.email, passwordHash })
-      .onConflictDoNothing().returning({ id: users.id, name: users.name, email: users.email })
-    if (!user) throw new ComputeError('email_taken', 'Somebody has signed up with this e-mail address already. Sign in instead.')
-    await recordEvent(tx, { userId: user.id, kind: 'person.registered', recordId: user.id })
-    const studio = invitationToken ? await joinByInvitation(tx, user.id, invitationToken) : await openStudio(tx, user.id, body.studioName ?? `${body.name.slice(0, 100)}’s studio`)
+    const { user, studio } = await addPerson(tx, { ...body, passwordHash, invitationHash })
     return { user, studio, sessionId: await openSession(tx, user.id) }
   })
+}
+
+/** A new person, in a studio of their own or in the one that an invitation names. Without a password there is another way in. */
+export async function addPerson(tx: Transaction, { name, email, passwordHash, studioName, invitationHash }: { name: string, email: string, passwordHash: string | null, studioName?: string, invitationHash?: string }): Promise<{ user: User, studio: StudioMembership }> {
+  requireOpenFor(invitationHash)
+  const [user] = await tx.insert(users).values({ id: uuidv7(), name, email, passwordHash })
+    .onConflictDoNothing().returning({ id: users.id, name: users.name, email: users.email })
+  if (!user) throw new ComputeError('email_taken', 'Somebody has signed up with this e-mail address already. Sign in instead.')
+  await recordEvent(tx, { userId: user.id, kind: 'person.registered', recordId: user.id })
+  return { user, studio: invitationHash ? await joinByInvitationHash(tx, user.id, invitationHash) : await openStudio(tx, user.id, studioName ?? `${name.slice(0, 100)}’s studio`) }
+}
+
+function requireOpenFor(invitationHash: string | undefined): void {
+  if (readSettings().REGISTRATION === 'invite' && !invitationHash) throw new ComputeError('registration_closed', 'This installation is open by invitation only. Ask an owner of a studio to invite you.')
 }
 
 export async function signIn({ email, password }: z.infer<typeof loginBody>): Promise<SignedIn> {

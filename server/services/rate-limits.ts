@@ -14,6 +14,7 @@ export const limitRules = {
   ],
   reset: [{ by: 'address', count: 20, seconds: 3600 }, { by: 'account', count: 5, seconds: 3600 }],
   passkey: [{ by: 'address', count: 200, seconds: 900 }],
+  openid: [{ by: 'address', count: 100, seconds: 900 }],
   link: [{ by: 'address', count: 60, seconds: 900 }],
   password: [{ by: 'account', count: 10, seconds: 900 }],
   letters: [{ by: 'account', count: 60, seconds: 3600 }],

@@ -7,6 +7,7 @@ import { curveEndpoints } from './curves'
 import { endpoint, type Endpoint } from './endpoint'
 import { findingEndpoints } from './findings'
 import { negativeEndpoints } from './negatives'
+import { openIdEndpoints } from './openid'
 import { passkeyEndpoints } from './passkeys'
 import { peopleEndpoints } from './people'
 import { photoEndpoints } from './photos'
@@ -24,5 +25,5 @@ const serviceEndpoints = {
 
 /** Every route of the service, by name. Validation, types and the OpenAPI document all come from here. */
 export const contract = {
-  ...serviceEndpoints, ...peopleEndpoints, ...accountEndpoints, ...passkeyEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints, ...tabletEndpoints, ...scannerProfileEndpoints, ...comparisonEndpoints, ...findingEndpoints, ...photoEndpoints, ...uploadEndpoints, ...negativeEndpoints, ...classEndpoints, ...wedgeEndpoints,
+  ...serviceEndpoints, ...peopleEndpoints, ...accountEndpoints, ...passkeyEndpoints, ...openIdEndpoints, ...shelfEndpoints, ...benchEndpoints, ...curveEndpoints, ...scanEndpoints, ...walkEndpoints, ...tabletEndpoints, ...scannerProfileEndpoints, ...comparisonEndpoints, ...findingEndpoints, ...photoEndpoints, ...uploadEndpoints, ...negativeEndpoints, ...classEndpoints, ...wedgeEndpoints,
 } satisfies Record<string, Endpoint>

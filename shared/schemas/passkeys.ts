@@ -29,8 +29,8 @@ const again = '/api/auth/sign-in-again' as const
 
 /** Passkeys beside passwords. Where none can work (no HTTPS, or no name), their routes say `passkeys_impossible`. */
 export const passkeyEndpoints = {
-  waysIn: endpoint({ method: 'GET', path: '/api/auth/ways', access: 'public', summary: 'Which ways of signing in there are; `passkeys.origin` is the address where passkeys work, null where they can’t.', answers: { 200: z.object({ passkeys: z.object({ origin: z.string().nullable() }) }) } }),
-  ownWaysIn: endpoint({ method: 'GET', path: '/api/me/ways', access: 'session', only: 'session', summary: 'Which of them one’s own account has.', answers: { 200: z.object({ password: z.boolean(), passkeys: z.number().int() }) } }),
+  waysIn: endpoint({ method: 'GET', path: '/api/auth/ways', access: 'public', summary: 'Which ways of signing in there are; `passkeys.origin` is the address where passkeys work, null where they can’t; `openId.name` is the word on its button.', answers: { 200: z.object({ passkeys: z.object({ origin: z.string().nullable() }), openId: z.object({ name: z.string() }).nullable() }) } }),
+  ownWaysIn: endpoint({ method: 'GET', path: '/api/me/ways', access: 'session', only: 'session', summary: 'Which of them one’s own account has.', answers: { 200: z.object({ password: z.boolean(), passkeys: z.number().int(), openId: z.boolean() }) } }),
   listPasskeys: endpoint({ method: 'GET', path: '/api/me/passkeys', access: 'session', only: 'session', summary: 'One’s passkeys, the oldest first.', answers: { 200: z.object({ items: z.array(passkey) }) } }),
   passkeyOptions: endpoint({ method: 'POST', path: '/api/me/passkeys/options', access: 'fresh-session', account: true, summary: 'What the browser needs to make a passkey; works for five minutes.', answers: { 200: browserOptions } }),
   addPasskey: endpoint({ method: 'POST', path: '/api/me/passkeys', access: 'fresh-session', account: true, summary: 'Keep the passkey that the browser made.', body: z.strictObject({ name, credential: newCredential }), answers: { 201: passkey } }),

@@ -46,6 +46,7 @@ const screens: Record<string, { path: (r: Records) => string, stands: string, is
   'pages/new-password.vue': { path: () => '/new-password', stands: 'h1', isPublic: true },
   'pages/confirm-address.vue': { path: () => '/confirm-address', stands: 'h1', isPublic: true },
   'pages/invitation.vue': { path: () => '/invitation', stands: 'h1', isPublic: true },
+  'pages/sign-in-problem.vue': { path: () => '/sign-in-problem?why=registration_closed', stands: 'h1', isPublic: true },
   'pages/account.vue': { path: () => '/account', stands: 'h1' },
   'pages/s/[studio]/studio.vue': { path: r => `/s/${r.slug}/studio`, stands: 'h1' },
   'pages/s/[studio]/people.vue': { path: r => `/s/${r.slug}/people`, stands: 'h1' },

@@ -4,6 +4,7 @@ import { calibrationCases } from './routes/calibration'
 import { classCases } from './routes/classes'
 import { curveCases } from './routes/curves'
 import { negativeCases } from './routes/negatives'
+import { openIdCases } from './routes/openid'
 import { passkeyCases } from './routes/passkeys'
 import { peopleCases } from './routes/people'
 import { photoCases } from './routes/photos'
@@ -16,4 +17,4 @@ import { walkCases } from './routes/walk'
 import { wedgeCases } from './routes/wedges'
 
 /** Every handler of the service, each with a good call of it. What must be refused follows from the contract, or is named. */
-export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...accountCases, ...passkeyCases, ...shelfCases, ...benchCases, ...curveCases, ...calibrationCases, ...scanCases, ...walkCases, ...photoCases, ...uploadCases, ...negativeCases, ...classCases, ...wedgeCases]
+export const routeTable: RouteCase[] = [...serviceCases, ...peopleCases, ...accountCases, ...passkeyCases, ...openIdCases, ...shelfCases, ...benchCases, ...curveCases, ...calibrationCases, ...scanCases, ...walkCases, ...photoCases, ...uploadCases, ...negativeCases, ...classCases, ...wedgeCases]

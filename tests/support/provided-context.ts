@@ -8,5 +8,7 @@ declare module 'vitest' {
     databaseUrl: string
     /** the same as superuser, for tests that make databases of their own */
     superuserUrl: string
+    /** a provider that every application signs in with */
+    openIdIssuer: string
   }
 }

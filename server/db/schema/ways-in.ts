@@ -1,7 +1,7 @@
-import { bigint, boolean, index, jsonb, pgTable, text, uuid, varchar } from 'drizzle-orm/pg-core'
+import { bigint, boolean, index, jsonb, pgTable, text, unique, uuid, varchar } from 'drizzle-orm/pg-core'
 import { limits } from '../../../shared/schemas/limits'
 import { createdAt, instant } from './columns'
-import { users } from './people'
+import { sessions, users } from './people'
 
 /** Passkeys of people: the public half, and how often the authenticator says it has signed. */
 export const passkeys = pgTable('passkeys', {
@@ -28,3 +28,29 @@ export const passkeyChallenges = pgTable('passkey_challenges', {
   userId: uuid().references(() => users.id),
   expiresAt: instant().notNull(),
 }, t => [index('passkey_challenges_expiry').on(t.expiresAt)])
+
+/** Who somebody is at an OpenID Connect provider. */
+export const identities = pgTable('identities', {
+  id: uuid().primaryKey(),
+  userId: uuid().notNull().references(() => users.id),
+  issuer: varchar({ length: 500 }).notNull(),
+  /** at most 255 ASCII characters (OpenID Connect Core 1.0, 2) */
+  subject: varchar({ length: 255 }).notNull(),
+  createdAt: createdAt(),
+  lastUsedAt: instant().notNull(),
+}, t => [unique('identities_subject').on(t.issuer, t.subject), index('identities_user').on(t.userId)])
+
+/** A sign-in that has gone to the provider and is not back yet; a cookie's secret finds its row, which is taken away as it is used. */
+export const openIdSignIns = pgTable('openid_sign_ins', {
+  secretHash: varchar({ length: 64 }).primaryKey(),
+  state: varchar({ length: 64 }).notNull(),
+  nonce: varchar({ length: 64 }).notNull(),
+  codeVerifier: varchar({ length: 128 }).notNull(),
+  /** where the person goes afterwards */
+  next: varchar({ length: limits.lineLength }),
+  invitationHash: varchar({ length: 64 }),
+  /** the session to be made fresh; null for a sign-in */
+  againSessionId: uuid().references(() => sessions.id, { onDelete: 'cascade' }),
+  createdAt: createdAt(),
+  expiresAt: instant().notNull(),
+}, t => [index('openid_sign_ins_expiry').on(t.expiresAt)])
