@@ -7,9 +7,6 @@ export { classSteps }
 /** Steps behind and reached, of five. */
 export const stepsTaken = (step: ClassStep): number => classSteps.indexOf(step) + 1
 
-const longDay = new Intl.DateTimeFormat('en', { dateStyle: 'long' })
-export const longDate = (instant: string): string => longDay.format(new Date(instant))
-
 /** The end of a day as it is here, from `2026-06-30`; null for what is no day. */
 export function endOfDay(date: string): string | null {
   const end = new Date(`${date}T23:59:59`)
