@@ -13,7 +13,7 @@ export default withNuxt(
   },
   {
     files: ['server/**/*.ts', 'server/**/*.mjs', 'pages/**', 'components/**', 'stores/**'],
-    ignores: ['server/image/**', 'server/cli/demo/make-photographs.mjs'],
+    ignores: ['server/image/**'],
     rules: explicitOnly(['sharp'], 'Only server/image imports sharp, and it runs in child processes only.'),
   },
 )

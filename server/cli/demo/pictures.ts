@@ -14,7 +14,7 @@ import { storage } from '../../services/storage'
 import type { DemoBenches } from './benches'
 import type { DemoPeople } from './people'
 
-/** Rendered by server/cli/demo/make-photographs.mjs. */
+/** Rendered by tests/support/demo/make-photographs.mjs. */
 export type Picture = 'bottles' | 'brick-light' | 'pears' | 'river-fog' | 'rope-coil' | 'rope-walk'
 const fileNames: Record<Picture, string> = {
   'bottles': 'Bottles on the sill.jpg', 'brick-light': 'Evening wall.jpg', 'pears': 'Three pears.jpg',

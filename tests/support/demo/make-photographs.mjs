@@ -3,11 +3,11 @@ import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
 import sharp from 'sharp'
 
-// Renders the demo studio's photographs: `node server/cli/demo/make-photographs.mjs [name …]`, a minute or two each. Nothing is
+// Renders the demo studio's photographs: `node tests/support/demo/make-photographs.mjs [name …]`, a minute or two each. Nothing is
 // taken from anywhere; the same seed gives the same pixels. Longer than other files: a renderer and its six scenes.
 
 const seed = 20261201
-const folder = fileURLToPath(new URL('photos', import.meta.url))
+const folder = fileURLToPath(new URL('../../../server/cli/demo/photos', import.meta.url))
 
 // ── chance and noise ──
 

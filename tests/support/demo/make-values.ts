@@ -1,16 +1,16 @@
 import { writeFileSync } from 'node:fs'
 import { fileURLToPath } from 'node:url'
 import { seededRandom } from '../../../shared/calibration/random'
-import { printExposureStrip, simulatedBaseSeconds } from '../../../tests/support/simulator/exposure-strip'
-import { printQualities, type PrintQuality } from '../../../tests/support/simulator/print'
-import { drawSystem, type PrintSystem } from '../../../tests/support/simulator/system'
-import { printStepsInOrder } from '../../../tests/support/simulator/wedge'
+import { printExposureStrip, simulatedBaseSeconds } from '../simulator/exposure-strip'
+import { printQualities, type PrintQuality } from '../simulator/print'
+import { drawSystem, type PrintSystem } from '../simulator/system'
+import { printStepsInOrder } from '../simulator/wedge'
 
-// Makes the measured values of the demo studio from the tests' simulated processes: `npx tsx server/cli/demo/make-values.ts`.
+// Makes the measured values of the demo studio from the tests' simulated processes: `npx tsx tests/support/demo/make-values.ts`.
 // The same seed gives the same values; the service reads the JSON and knows nothing of the simulator.
 
 const seed = 20261201
-const target = fileURLToPath(new URL('values.json', import.meta.url))
+const target = fileURLToPath(new URL('../../../server/cli/demo/values.json', import.meta.url))
 
 /** A process whose exposure scale lies where such papers lie; `seconds` is its base exposure. */
 const process = (offset: number, exposureScaleFrom: number, exposureScaleTo: number) => drawSystem(seededRandom(seed + offset), { exposureScaleFrom, exposureScaleTo })
@@ -31,7 +31,7 @@ const strip = (system: PrintSystem, offset: number, seconds: number, lampLog: nu
 
 const cyanotype = process(1, 1.15, 1.35), vanDyke = process(2, 1.55, 1.8), kallitype = process(3, 1.5, 1.7)
 const values = {
-  origin: { script: 'server/cli/demo/make-values.ts', seed, truth: Object.fromEntries(Object.entries({ cyanotype, vanDyke, kallitype }).map(([name, system]) => [name, Array.from({ length: 11 }, (_, i) => rounded(system.lightness(i / 10), 2))])) },
+  origin: { script: 'tests/support/demo/make-values.ts', seed, truth: Object.fromEntries(Object.entries({ cyanotype, vanDyke, kallitype }).map(([name, system]) => [name, Array.from({ length: 11 }, (_, i) => rounded(system.lightness(i / 10), 2))])) },
   cyanotype: {
     rough: wedge(cyanotype, 11, 0.08, printQualities.rough),
     careful: [wedge(cyanotype, 12, 0.01, printQualities.careful), wedge(cyanotype, 13, -0.015, printQualities.careful)],
