@@ -47,7 +47,7 @@ describe('a class', () => {
     await second.page.getByRole('button', { name: /personal code/ }).click()
     await second.page.getByLabel('Personal code').fill(personalCode.toLowerCase())
     await second.page.getByRole('button', { name: 'Come back' }).click()
-    await second.page.getByText(/handed in/).waitFor()
+    await second.page.getByRole('link', { name: /handed in/ }).waitFor()
     expect([teacher, student, second].flatMap(({ elsewhere, errors }) => [...elsewhere, ...errors])).toEqual([])
     for (const { context } of [teacher, student, second]) await context.close()
   })
